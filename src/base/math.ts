@@ -4,10 +4,10 @@
  * differ in the last bit between hosts and with them every cut. Accuracy: a few units in the last place (tests/base).
  */
 
-const LN2_HIGH = 6.9314718036912381649e-1;
-const LN2_LOW = 1.90821492927058770002e-10;
-export const PI = 3.141592653589793;
-const HALF_PI = 1.5707963267948966;
+const LN2_HIGH = 0.6931471803691238;
+const LN2_LOW = 1.9082149292705877e-10;
+export const PI = Math.PI;
+const HALF_PI = PI / 2;
 const SQRT_TWO_PI = 2.5066282746310002;
 
 /** 2^n by repeated squaring, exact over the range of normal numbers. */

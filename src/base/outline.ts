@@ -222,7 +222,7 @@ function nearestOnSegment(segment: Segment, x: number, y: number): { d2: number;
     const ux = (segment.x1 - segment.x0) / segment.length;
     const uy = (segment.y1 - segment.y0) / segment.length;
     const along = (x - segment.x0) * ux + (y - segment.y0) * uy;
-    const clamped = along < 0 ? 0 : along > segment.length ? segment.length : along;
+    const clamped = Math.min(Math.max(along, 0), segment.length);
     const px = x - segment.x0 - clamped * ux;
     const py = y - segment.y0 - clamped * uy;
     return { d2: px * px + py * py, t: clamped / segment.length, side: px * uy - py * ux };
