@@ -10,20 +10,19 @@ const MULTIPLIER_1 = 0xcd9e8d57;
 const WEYL_0 = 0x9e3779b9;
 const WEYL_1 = 0xbb67ae85;
 
-/** High 32 bits of the product of two unsigned 32-bit numbers, by halves. */
+/** High 32 bits of the product of two unsigned 32-bit numbers, as a signed one: by halves, in 32-bit integers only. */
 export function multiplyHigh(a: number, b: number): number {
   const a0 = a & 0xffff;
   const a1 = a >>> 16;
   const b0 = b & 0xffff;
   const b1 = b >>> 16;
-  const middle = a1 * b0 + ((a0 * b0) >>> 16);
-  const carry = a0 * b1 + (middle & 0xffff);
-  return (a1 * b1 + Math.floor(middle / 65536) + Math.floor(carry / 65536)) >>> 0;
+  const p01 = Math.imul(a0, b1);
+  const p10 = Math.imul(a1, b0);
+  const middle = (Math.imul(a0, b0) >>> 16) + (p01 & 0xffff) + (p10 & 0xffff);
+  return (Math.imul(a1, b1) + (p01 >>> 16) + (p10 >>> 16) + (middle >>> 16)) | 0;
 }
 
-/**
- * Fills `out[0..3]` (unsigned 32-bit) for counter (c0, c1, c2, c3) under key (k0, k1).
- */
+/** Fills `out[0..3]` (unsigned 32-bit) for counter (c0, c1, c2, c3) under key (k0, k1). */
 export function philox(
   out: Uint32Array,
   c0: number,
@@ -33,23 +32,23 @@ export function philox(
   k0: number,
   k1: number,
 ): Uint32Array {
-  let x0 = c0 >>> 0;
-  let x1 = c1 >>> 0;
-  let x2 = c2 >>> 0;
-  let x3 = c3 >>> 0;
-  let key0 = k0 >>> 0;
-  let key1 = k1 >>> 0;
+  let x0 = c0 | 0;
+  let x1 = c1 | 0;
+  let x2 = c2 | 0;
+  let x3 = c3 | 0;
+  let key0 = k0 | 0;
+  let key1 = k1 | 0;
   for (let round = 0; round < 10; round++) {
     const hi0 = multiplyHigh(MULTIPLIER_0, x0);
-    const lo0 = Math.imul(MULTIPLIER_0, x0) >>> 0;
+    const lo0 = Math.imul(MULTIPLIER_0, x0);
     const hi1 = multiplyHigh(MULTIPLIER_1, x2);
-    const lo1 = Math.imul(MULTIPLIER_1, x2) >>> 0;
-    x0 = (hi1 ^ x1 ^ key0) >>> 0;
+    const lo1 = Math.imul(MULTIPLIER_1, x2);
+    x0 = hi1 ^ x1 ^ key0;
     x1 = lo1;
-    x2 = (hi0 ^ x3 ^ key1) >>> 0;
+    x2 = hi0 ^ x3 ^ key1;
     x3 = lo0;
-    key0 = (key0 + WEYL_0) >>> 0;
-    key1 = (key1 + WEYL_1) >>> 0;
+    key0 = (key0 + WEYL_0) | 0;
+    key1 = (key1 + WEYL_1) | 0;
   }
   out[0] = x0;
   out[1] = x1;

@@ -1,0 +1,74 @@
+import { type Field, type Kernel, type KernelTables, OUT_OF_REACH, type Rim, STEP } from './kernels/contract.ts';
+import type { CutModel } from './model.ts';
+import type { CutState } from './state.ts';
+
+/** One field with its step numbers; `rim` marks a wall. */
+export interface Workpiece {
+  readonly field: Field;
+  readonly step: Float64Array;
+  readonly rim: Rim | null;
+}
+
+/** What the tiles of a step need: the fields in a fixed order, and the tables. */
+export interface TileWork {
+  readonly pieces: readonly Workpiece[];
+  readonly tables: KernelTables;
+  /** Tasks of each of the four colours; a task is (piece << 24) | tile. */
+  readonly colours: readonly Int32Array[];
+}
+
+/** Runs all tiles of one step: the four colours one after another, the tiles of a colour in any order. */
+export interface TileRunner {
+  run(): void;
+}
+
+/** Lists the tiles of every field by colour, (x even/odd) and (y even/odd): tiles of one colour never touch. */
+export function tileWork(pieces: readonly Workpiece[], tables: KernelTables): TileWork {
+  const colours: number[][] = [[], [], [], []];
+  pieces.forEach(({ field }, piece) => {
+    for (let tile = 0; tile < field.tilesX * field.tilesY; tile++) {
+      const tx = tile % field.tilesX;
+      const ty = Math.floor(tile / field.tilesX);
+      (colours[(tx & 1) | ((ty & 1) << 1)] as number[]).push((piece << 24) | tile);
+    }
+  });
+  return { pieces, tables, colours: colours.map((tasks) => Int32Array.from(tasks)) };
+}
+
+/** The fields of a state in their fixed order: strip first, since its few tiles are the longest, then floor and walls. */
+export function piecesOf(state: CutState): Workpiece[] {
+  return [
+    ...(state.strip ? [{ field: state.strip, step: state.stripStep, rim: null }] : []),
+    { field: state.floor, step: state.floorStep, rim: null },
+    ...state.walls.map((wall) => ({ field: wall.field, step: wall.step, rim: wall.rim })),
+  ];
+}
+
+/** Hits the tile of one task. */
+export function runTask(kernel: Kernel, work: TileWork, task: number): void {
+  const piece = work.pieces[task >> 24] as Workpiece;
+  if (piece.step[STEP.active] !== 1) return;
+  const tile = task & 0xffffff;
+  if (piece.rim) kernel.hitWall(piece.field, work.tables, piece.step, tile, piece.rim);
+  else kernel.hitFloor(piece.field, work.tables, piece.step, tile);
+}
+
+/** Runs every tile on the calling thread. */
+export function serialRunner(kernel: Kernel, model: CutModel, state: CutState): TileRunner {
+  const work = tileWork(piecesOf(state), model.tables.kernel);
+  return {
+    run() {
+      for (const tasks of work.colours) for (const task of tasks) runTask(kernel, work, task);
+    },
+  };
+}
+
+/** True where a tile of the floor can never be hit: no column within reach. */
+export function isIdle(field: Field, tile: number): boolean {
+  const per = field.tile / field.block;
+  const blocks = per * per;
+  for (let k = tile * blocks; k < (tile + 1) * blocks; k++) {
+    if ((field.bounds[k] as number) > OUT_OF_REACH) return false;
+  }
+  return true;
+}
