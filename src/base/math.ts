@@ -10,15 +10,28 @@ export const PI = Math.PI;
 const HALF_PI = PI / 2;
 const SQRT_TWO_PI = 2.5066282746310002;
 
-/** 2^n by repeated squaring, exact over the range of normal numbers. */
-function powerOfTwo(n: number): number {
-  let result = 1;
-  let base = n < 0 ? 0.5 : 2;
-  for (let k = n < 0 ? -n : n; k > 0; k = (k - (k % 2)) / 2) {
-    if (k % 2 === 1) result *= base;
-    base *= base;
+const LOWEST = -1022;
+const HIGHEST = 1023;
+/** 2^n for every normal exponent, by doubling and halving, which are exact. */
+const POWERS_OF_TWO = Float64Array.from({ length: HIGHEST - LOWEST + 1 }, (_, i) => {
+  let power = 1;
+  for (let n = i + LOWEST; n > 0; n--) power *= 2;
+  for (let n = i + LOWEST; n < 0; n++) power /= 2;
+  return power;
+});
+
+const powerOfTwo = (n: number) => POWERS_OF_TWO[n - LOWEST] as number;
+
+/** Largest normal exponent k with 2^k <= x, by bisection; the lowest for subnormal x. */
+function exponentOf(x: number): number {
+  let low = LOWEST;
+  let high = HIGHEST + 1;
+  while (high - low > 1) {
+    const middle = (low + high) >> 1;
+    if (powerOfTwo(middle) <= x) low = middle;
+    else high = middle;
   }
-  return result;
+  return low;
 }
 
 /** e^x. Reduction x = k ln 2 + r, |r| <= ln 2 / 2, then the Taylor series to the thirteenth power. */
@@ -39,19 +52,12 @@ export function log(x: number): number {
   if (!(x >= 0)) return Number.NaN;
   if (x === 0) return Number.NEGATIVE_INFINITY;
   if (x === Number.POSITIVE_INFINITY) return x;
-  let m = x;
-  let k = 0;
-  for (let step = 512; step >= 1; step /= 2) {
-    const up = powerOfTwo(step);
-    while (m >= up) {
-      m /= up;
-      k += step;
-    }
-    while (m * up < 2) {
-      m *= up;
-      k -= step;
-    }
-  }
+  // subnormal numbers are first scaled up, exactly
+  const lifted = x < powerOfTwo(LOWEST) ? 64 : 0;
+  const scaled = x * powerOfTwo(lifted);
+  let k = exponentOf(scaled);
+  let m = scaled / powerOfTwo(k);
+  k -= lifted;
   if (m > Math.SQRT2) {
     m /= 2;
     k += 1;

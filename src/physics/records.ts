@@ -22,6 +22,8 @@ export interface ToolMaterial {
   readonly density: number;
   /** Fully reversed smooth-bar fatigue strength (Pa). */
   readonly fatigueStrength: number;
+  /** Largest working strain where practice sets one instead of the fatigue strength (titanium: 0.0025). */
+  readonly strainLimit?: number;
   readonly metal: boolean;
 }
 

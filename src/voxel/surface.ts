@@ -1,0 +1,211 @@
+import type { HeightField, PlaneCurve } from '#src/base/field.ts';
+import { nearest, type Outline } from '#src/base/outline.ts';
+import { ALL_EMPTY, ALL_SOLID, BRICK, BRICK_VOXELS, type BrickField, solidAt } from './bricks.ts';
+import type { CutState } from './state.ts';
+
+/** Half of a full voxel: the surface runs where the solid fraction passes it. */
+const HALF = 127.5;
+
+/** Depth of the first solid below the entry face in each column (m), from the voxels' fractions, nx x ny. */
+export function surfaceDepths(bricks: BrickField): Float64Array {
+  const { nx, ny, nz, pitch, table, solid } = bricks;
+  const bx = nx >> 3;
+  const by = ny >> 3;
+  const depths = new Float64Array(nx * ny);
+  const done = new Uint8Array(nx * ny);
+  for (let k = 0; k < nz >> 3; k++) {
+    for (let j = 0; j < by; j++) {
+      for (let i = 0; i < bx; i++) {
+        const entry = table[(k * by + j) * bx + i] as number;
+        for (let n = 0; n < BRICK * BRICK; n++) {
+          const column = (j * BRICK + (n >> 3)) * nx + i * BRICK + (n & 7);
+          if (done[column] === 1) continue;
+          if (entry === ALL_EMPTY) depths[column] = (depths[column] as number) + BRICK * pitch;
+          else if (entry === ALL_SOLID) done[column] = 1;
+          else addBrick(solid, entry, n, column, pitch, depths, done);
+        }
+      }
+    }
+  }
+  return depths;
+}
+
+function addBrick(
+  solid: Uint8Array,
+  entry: number,
+  n: number,
+  column: number,
+  pitch: number,
+  depths: Float64Array,
+  done: Uint8Array,
+): void {
+  for (let k = 0; k < BRICK; k++) {
+    const fraction = solid[entry * BRICK_VOXELS + k * BRICK * BRICK + n] as number;
+    depths[column] = (depths[column] as number) + ((255 - fraction) / 255) * pitch;
+    if (fraction === 255) {
+      done[column] = 1;
+      return;
+    }
+  }
+}
+
+/**
+ * The floor as a height field (m, up positive), NaN nearer than `margin` to the tool's outline and outside it.
+ * @param outline the tool's outline in the bricks' frame
+ */
+export function floorField(bricks: BrickField, outline: Outline, margin: number): HeightField {
+  const depths = surfaceDepths(bricks);
+  const { nx, ny, pitch, x0, y0 } = bricks;
+  const z = new Float32Array(nx * ny);
+  for (let j = 0; j < ny; j++) {
+    for (let i = 0; i < nx; i++) {
+      const inside = nearest(outline, x0 + i * pitch, y0 + j * pitch).distance < -margin;
+      z[j * nx + i] = inside ? -(depths[j * nx + i] as number) : Number.NaN;
+    }
+  }
+  return { nx, ny, dx: pitch, dy: pitch, x0, y0, z };
+}
+
+/**
+ * Points of the wall at depth z: where the solid fraction passes one half between neighbouring voxels of that layer, along
+ * x and along y. In no order.
+ */
+export function wallPoints(bricks: BrickField, z: number): PlaneCurve {
+  const { nx, ny, nz, pitch, x0, y0 } = bricks;
+  const k = Math.max(0, Math.min(nz - 1, Math.floor(z / pitch)));
+  const layer = new Float64Array(nx * ny);
+  for (let j = 0; j < ny; j++) for (let i = 0; i < nx; i++) layer[j * nx + i] = solidAt(bricks, i, j, k);
+  const xs: number[] = [];
+  const ys: number[] = [];
+  const cross = (a: number, b: number, at: (t: number) => readonly [number, number]) => {
+    if (a < HALF === b < HALF) return;
+    const [x, y] = at((HALF - a) / (b - a));
+    xs.push(x);
+    ys.push(y);
+  };
+  for (let j = 0; j < ny; j++) {
+    for (let i = 0; i < nx; i++) {
+      const here = layer[j * nx + i] as number;
+      if (i + 1 < nx) cross(here, layer[j * nx + i + 1] as number, (t) => [x0 + (i + t) * pitch, y0 + j * pitch]);
+      if (j + 1 < ny) cross(here, layer[(j + 1) * nx + i] as number, (t) => [x0 + i * pitch, y0 + (j + t) * pitch]);
+    }
+  }
+  return { x: Float64Array.from(xs), y: Float64Array.from(ys), closed: false };
+}
+
+/** Mean distance of the wall outside the tool's outline by depth (m), and its spread: one entry a layer. */
+export interface WallByDepth {
+  readonly z: Float64Array;
+  readonly gap: Float64Array;
+  readonly spread: Float64Array;
+}
+
+/** Side gap of the wall by depth, averaged around the outline, layer by layer down to `depth`. */
+export function wallByDepth(bricks: BrickField, outline: Outline, depth: number, layers: number): WallByDepth {
+  const z = Float64Array.from({ length: layers }, (_, k) => ((k + 0.5) / layers) * depth);
+  const gap = new Float64Array(layers);
+  const spread = new Float64Array(layers);
+  z.forEach((at, k) => {
+    const points = wallPoints(bricks, at);
+    let sum = 0;
+    let squares = 0;
+    for (let n = 0; n < points.x.length; n++) {
+      const { distance } = nearest(outline, points.x[n] as number, points.y[n] as number);
+      sum += distance;
+      squares += distance * distance;
+    }
+    const count = Math.max(1, points.x.length);
+    gap[k] = sum / count;
+    spread[k] = Math.sqrt(Math.max(0, squares / count - (sum / count) ** 2));
+  });
+  return { z, gap, spread };
+}
+
+/** The corner between wall and floor, averaged around the outline: points (distance outside the tool, depth), m. */
+export function cornerPoints(bricks: BrickField, outline: Outline, from: number, to: number): PlaneCurve {
+  const depths = surfaceDepths(bricks);
+  const { nx, ny, pitch, x0, y0 } = bricks;
+  const step = pitch / 2;
+  const bins = Math.max(1, Math.ceil((to - from) / step));
+  const sums = new Float64Array(bins);
+  const counts = new Float64Array(bins);
+  for (let j = 0; j < ny; j++) {
+    for (let i = 0; i < nx; i++) {
+      const { distance } = nearest(outline, x0 + i * pitch, y0 + j * pitch);
+      const bin = Math.floor((distance - from) / step);
+      if (bin < 0 || bin >= bins) continue;
+      sums[bin] = (sums[bin] as number) + (depths[j * nx + i] as number);
+      counts[bin] = (counts[bin] as number) + 1;
+    }
+  }
+  const x: number[] = [];
+  const y: number[] = [];
+  sums.forEach((sum, bin) => {
+    if ((counts[bin] as number) === 0) return;
+    x.push(from + (bin + 0.5) * step);
+    y.push(sum / (counts[bin] as number));
+  });
+  return { x: Float64Array.from(x), y: Float64Array.from(y), closed: false };
+}
+
+/** The section of the solid at the voxel row nearest to y: surface depth from above, and the wall's two sides by depth. */
+export interface SectionCurves {
+  /** Depth of the surface along x (m). */
+  readonly x: Float64Array;
+  readonly surface: Float64Array;
+  /** Outermost empty x on either side, layer by layer (m); NaN where the layer is solid all through. */
+  readonly z: Float64Array;
+  readonly left: Float64Array;
+  readonly right: Float64Array;
+}
+
+/** Cuts the solid along the plane y = `y` (m). */
+export function sectionAt(bricks: BrickField, y: number): SectionCurves {
+  const { nx, nz, pitch, x0, y0 } = bricks;
+  const j = Math.max(0, Math.min(bricks.ny - 1, Math.round((y - y0) / pitch)));
+  const x = Float64Array.from({ length: nx }, (_, i) => x0 + i * pitch);
+  const surface = new Float64Array(nx);
+  const z = Float64Array.from({ length: nz }, (_, k) => (k + 0.5) * pitch);
+  const left = new Float64Array(nz).fill(Number.NaN);
+  const right = new Float64Array(nz).fill(Number.NaN);
+  for (let i = 0; i < nx; i++) {
+    let depth = 0;
+    for (let k = 0; k < nz; k++) {
+      const solid = solidAt(bricks, i, j, k);
+      depth += ((255 - solid) / 255) * pitch;
+      if (solid === 255) break;
+    }
+    surface[i] = depth;
+  }
+  for (let k = 0; k < nz; k++) {
+    for (let i = 0; i + 1 < nx; i++) {
+      const a = solidAt(bricks, i, j, k);
+      const b = solidAt(bricks, i + 1, j, k);
+      if (a < HALF === b < HALF) continue;
+      const at = x0 + (i + (HALF - a) / (b - a)) * pitch;
+      if (Number.isNaN(left[k] as number)) left[k] = at;
+      right[k] = at;
+    }
+  }
+  return { x, surface, z, left, right };
+}
+
+/** The rim unrolled: arc length, chip depth down the wall and chip width on the entry face (m), all loops in turn. */
+export function rimProfile(
+  state: CutState,
+  widthRatio: number,
+): { arc: Float64Array; depth: Float64Array; width: Float64Array } {
+  const total = state.walls.reduce((sum, wall) => sum + wall.rim.n, 0);
+  const arc = new Float64Array(total);
+  const depth = new Float64Array(total);
+  let n = 0;
+  let start = 0;
+  for (const { rim } of state.walls) {
+    for (let k = 0; k < rim.n; k++, n++) {
+      arc[n] = start + (k + 0.5) * rim.spacing;
+      depth[n] = rim.chips[k] as number;
+    }
+    start += rim.n * rim.spacing;
+  }
+  return { arc, depth, width: depth.map((deep) => deep * widthRatio) };
+}
