@@ -66,7 +66,7 @@ const floors: Record<string, (i: number, j: number) => number> = {
   sine: (i, j) => 2e-6 * Math.sin(i / 6) * Math.cos(j / 9) - 3e-6,
   random: (() => {
     const normal = seededNormal(5);
-    const heights = Float64Array.from({ length: 128 * 128 }, () => 1.5e-6 * normal() - 8e-6);
+    const heights = Float64Array.from({ length: 128 * 128 }, () => 1.5e-6 * normal() - 4e-6);
     return (i: number, j: number) => heights[j * 128 + i] as number;
   })(),
 };
@@ -123,10 +123,12 @@ export function kernelSpec(create: () => Kernel, precision: 32 | 64): void {
       const before = Float64Array.from(field.heights);
       hitAll(field, step);
       let lost = 0;
+      let risen = 0;
       before.forEach((h, k) => {
-        expect(field.heights[k] as number).toBeLessThanOrEqual(h);
+        if ((field.heights[k] as number) > h) risen++;
         lost += h - (field.heights[k] as number);
       });
+      expect(risen).toBe(0);
       const booked = total(field, SUM.chipRemoved) + total(field, SUM.dentRemoved) + total(field, SUM.freeRemoved);
       // differences of stored heights are exact in double precision; only the order of summation differs
       expect(Math.abs(lost * PITCH * PITCH - booked)).toBeLessThan(1e-9 * booked);
@@ -139,13 +141,15 @@ export function kernelSpec(create: () => Kernel, precision: 32 | 64): void {
     test('a tile changes no column further than half a tile beyond itself', () => {
       const field = testFloor(precision, () => 0);
       kernel.hitFloor(field, kernelTables, testStep(40e-6, 200), 0);
+      let strayed = 0;
       for (let j = 0; j < 128; j++) {
         for (let i = 0; i < 128; i++) {
           // tile 0 spans 0..63; on a periodic field the far half of the other tiles is out of its reach
           const away = (n: number) => (n < 64 ? 0 : Math.min(n - 63, 128 - n));
-          if (Math.max(away(i), away(j)) > 32) expect(field.heights[j * 128 + i]).toBe(0);
+          if (Math.max(away(i), away(j)) > 32 && field.heights[j * 128 + i] !== 0) strayed++;
         }
       }
+      expect(strayed).toBe(0);
       expect(field.heights.some((h) => h < 0)).toBe(true);
     });
 
@@ -194,7 +198,7 @@ export function kernelSpec(create: () => Kernel, precision: 32 | 64): void {
       };
       expect(mean(10, 60)).toBeLessThan(mean(72, 80));
       expect(mean(72, 80)).toBeLessThan(mean(88, 100));
-      for (let k = 101 * 128; k < 128 * 128; k++) expect(field.heights[k]).toBe(OUT_OF_REACH);
+      expect(field.heights.subarray(101 * 128).every((h) => h === OUT_OF_REACH)).toBe(true);
       expect(total(field, SUM.faceRemoved)).toBeLessThan(total(field, SUM.chipRemoved) + total(field, SUM.dentRemoved));
     });
 
@@ -265,16 +269,14 @@ export function kernelSpec(create: () => Kernel, precision: 32 | 64): void {
         row[STEP.step] = round;
         const before = wall.heights.slice();
         for (let tile = 0; tile < 2; tile++) kernel.hitWall(wall, kernelTables, row, tile, rim);
-        wall.heights.forEach((h, k) => {
-          expect(h).toBeLessThanOrEqual(before[k] as number);
-        });
+        expect(wall.heights.every((h, k) => h <= (before[k] as number))).toBe(true);
       }
       const open = wall.heights.subarray(0, 40 * 128);
       expect(open.some((h) => h < -42e-6)).toBe(true);
-      for (let k = 40 * 128; k < 64 * 128; k++) expect(wall.heights[k]).toBe(OUT_OF_REACH);
+      expect(wall.heights.subarray(40 * 128).every((h) => h === OUT_OF_REACH)).toBe(true);
       const furthest = kernelTables.coefficients[COEFFICIENT.runoutLargest] as number;
       const deepest = (kernelTables.coefficients[COEFFICIENT.depth] as number) * 3;
-      for (const h of open) expect(-h).toBeLessThan(largest + furthest + deepest);
+      expect(Math.max(...open.map((h) => -h))).toBeLessThan(largest + furthest + deepest);
       // the hardest hit a squeeze of twice the largest run-out can make
       const hardest = Math.max(wall.sums[SUM.largestLoad] as number, 4);
       const chipLoad = kernelTables.coefficients[COEFFICIENT.chipLoad] as number;
