@@ -13,11 +13,8 @@ const FIRST_STEPS = 20;
 const FIRST_CYCLES = 50;
 /** Weight of a new step in the smoothed rate. */
 const SMOOTHING = 0.05;
-/** Steps between balances while the floor is roughening, and on a settled floor. */
-const BALANCE_ROUGHENING = 2;
-const BALANCE_SETTLED = 8;
-/** The floor has settled after this many mean chip depths. */
-const SETTLED_AFTER = 3;
+/** Steps between balances: the face follows the floor in between, and drifts off load where edges carry much of it. */
+const BALANCE_EVERY = 2;
 
 /** Raised when a step leaves the state impossible: names the quantity, the place and the step. */
 export class StateError extends Error {
@@ -33,8 +30,7 @@ export function isDone(model: CutModel, state: CutState): boolean {
 export function advance(model: CutModel, state: CutState, runner: TileRunner): void {
   const s = state.scalars;
   const step = s[SCALAR.step] as number;
-  const roughening = -(s[SCALAR.floorMean] as number) < SETTLED_AFTER * Math.max(model.chipDepth, model.startEfold);
-  if (step % (roughening ? BALANCE_ROUGHENING : BALANCE_SETTLED) === 0) balanceAll(model, state);
+  if (step % BALANCE_EVERY === 0) balanceAll(model, state);
   const cycles = cyclesOf(model, state);
   setSteps(model, state, cycles);
   runner.run();
@@ -241,7 +237,7 @@ function book(model: CutModel, state: CutState, cycles: number): void {
   const sums = totals(state.floor);
   const at = (k: number) => sums[k] as number;
   // free impacts lower every reachable column evenly, so the flat face's part goes by area
-  const even = (state.floorStep[STEP.even] as number) > 0 ? (state.floorStep[STEP.even] as number) : 0;
+  const even = state.floorStep[STEP.even] as number;
   const lowered = at(SUM.faceRemoved) / state.faceArea + even;
   const step = s[SCALAR.step] as number;
   const rate = lowered / cycles;

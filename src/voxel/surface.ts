@@ -1,5 +1,4 @@
 import type { HeightField, PlaneCurve } from '#src/base/field.ts';
-import { nearest, type Outline } from '#src/base/outline.ts';
 import { ALL_EMPTY, ALL_SOLID, BRICK, BRICK_VOXELS, type BrickField, solidAt } from './bricks.ts';
 import type { CutState } from './state.ts';
 
@@ -49,103 +48,49 @@ function addBrick(
   }
 }
 
-/**
- * The floor as a height field (m, up positive), NaN nearer than `margin` to the tool's outline and outside it.
- * @param outline the tool's outline in the bricks' frame
- */
-export function floorField(bricks: BrickField, outline: Outline, margin: number): HeightField {
-  const depths = surfaceDepths(bricks);
+/** The solid's upper surface as a height field (m, up positive): the floor inside, the entry face outside. */
+export function surfaceField(bricks: BrickField): HeightField {
   const { nx, ny, pitch, x0, y0 } = bricks;
-  const z = new Float32Array(nx * ny);
-  for (let j = 0; j < ny; j++) {
-    for (let i = 0; i < nx; i++) {
-      const inside = nearest(outline, x0 + i * pitch, y0 + j * pitch).distance < -margin;
-      z[j * nx + i] = inside ? -(depths[j * nx + i] as number) : Number.NaN;
-    }
-  }
+  const z = surfaceDepths(bricks).map((depth) => -depth);
   return { nx, ny, dx: pitch, dy: pitch, x0, y0, z };
 }
 
 /**
  * Points of the wall at depth z: where the solid fraction passes one half between neighbouring voxels of that layer, along
- * x and along y. In no order.
+ * x and along y. In no order. Only bricks that hold a surface, or border on a brick of another kind, are looked at.
  */
 export function wallPoints(bricks: BrickField, z: number): PlaneCurve {
-  const { nx, ny, nz, pitch, x0, y0 } = bricks;
+  const { nx, ny, nz, pitch, x0, y0, table } = bricks;
   const k = Math.max(0, Math.min(nz - 1, Math.floor(z / pitch)));
-  const layer = new Float64Array(nx * ny);
-  for (let j = 0; j < ny; j++) for (let i = 0; i < nx; i++) layer[j * nx + i] = solidAt(bricks, i, j, k);
+  const bx = nx >> 3;
+  const by = ny >> 3;
+  const row = (k >> 3) * by * bx;
   const xs: number[] = [];
   const ys: number[] = [];
-  const cross = (a: number, b: number, at: (t: number) => readonly [number, number]) => {
+  const cross = (i: number, j: number, di: number, dj: number) => {
+    if (i + di >= nx || j + dj >= ny) return;
+    const a = solidAt(bricks, i, j, k);
+    const b = solidAt(bricks, i + di, j + dj, k);
     if (a < HALF === b < HALF) return;
-    const [x, y] = at((HALF - a) / (b - a));
-    xs.push(x);
-    ys.push(y);
+    const t = (HALF - a) / (b - a);
+    xs.push(x0 + (i + t * di) * pitch);
+    ys.push(y0 + (j + t * dj) * pitch);
   };
-  for (let j = 0; j < ny; j++) {
-    for (let i = 0; i < nx; i++) {
-      const here = layer[j * nx + i] as number;
-      if (i + 1 < nx) cross(here, layer[j * nx + i + 1] as number, (t) => [x0 + (i + t) * pitch, y0 + j * pitch]);
-      if (j + 1 < ny) cross(here, layer[(j + 1) * nx + i] as number, (t) => [x0 + i * pitch, y0 + (j + t) * pitch]);
+  for (let j = 0; j < by; j++) {
+    for (let i = 0; i < bx; i++) {
+      const entry = table[row + j * bx + i] as number;
+      const right = i + 1 < bx ? table[row + j * bx + i + 1] : entry;
+      const below = j + 1 < by ? table[row + (j + 1) * bx + i] : entry;
+      if (entry < 0 && right === entry && below === entry) continue;
+      for (let n = 0; n < BRICK * BRICK; n++) {
+        const column = i * BRICK + (n & 7);
+        const line = j * BRICK + (n >> 3);
+        cross(column, line, 1, 0);
+        cross(column, line, 0, 1);
+      }
     }
   }
   return { x: Float64Array.from(xs), y: Float64Array.from(ys), closed: false };
-}
-
-/** Mean distance of the wall outside the tool's outline by depth (m), and its spread: one entry a layer. */
-export interface WallByDepth {
-  readonly z: Float64Array;
-  readonly gap: Float64Array;
-  readonly spread: Float64Array;
-}
-
-/** Side gap of the wall by depth, averaged around the outline, layer by layer down to `depth`. */
-export function wallByDepth(bricks: BrickField, outline: Outline, depth: number, layers: number): WallByDepth {
-  const z = Float64Array.from({ length: layers }, (_, k) => ((k + 0.5) / layers) * depth);
-  const gap = new Float64Array(layers);
-  const spread = new Float64Array(layers);
-  z.forEach((at, k) => {
-    const points = wallPoints(bricks, at);
-    let sum = 0;
-    let squares = 0;
-    for (let n = 0; n < points.x.length; n++) {
-      const { distance } = nearest(outline, points.x[n] as number, points.y[n] as number);
-      sum += distance;
-      squares += distance * distance;
-    }
-    const count = Math.max(1, points.x.length);
-    gap[k] = sum / count;
-    spread[k] = Math.sqrt(Math.max(0, squares / count - (sum / count) ** 2));
-  });
-  return { z, gap, spread };
-}
-
-/** The corner between wall and floor, averaged around the outline: points (distance outside the tool, depth), m. */
-export function cornerPoints(bricks: BrickField, outline: Outline, from: number, to: number): PlaneCurve {
-  const depths = surfaceDepths(bricks);
-  const { nx, ny, pitch, x0, y0 } = bricks;
-  const step = pitch / 2;
-  const bins = Math.max(1, Math.ceil((to - from) / step));
-  const sums = new Float64Array(bins);
-  const counts = new Float64Array(bins);
-  for (let j = 0; j < ny; j++) {
-    for (let i = 0; i < nx; i++) {
-      const { distance } = nearest(outline, x0 + i * pitch, y0 + j * pitch);
-      const bin = Math.floor((distance - from) / step);
-      if (bin < 0 || bin >= bins) continue;
-      sums[bin] = (sums[bin] as number) + (depths[j * nx + i] as number);
-      counts[bin] = (counts[bin] as number) + 1;
-    }
-  }
-  const x: number[] = [];
-  const y: number[] = [];
-  sums.forEach((sum, bin) => {
-    if ((counts[bin] as number) === 0) return;
-    x.push(from + (bin + 0.5) * step);
-    y.push(sum / (counts[bin] as number));
-  });
-  return { x: Float64Array.from(x), y: Float64Array.from(y), closed: false };
 }
 
 /** The section of the solid at the voxel row nearest to y: surface depth from above, and the wall's two sides by depth. */

@@ -208,9 +208,10 @@ function chipForm(chips: readonly Chip[], x: number, y: number, z: number): numb
 export function pocketForm(pocket: DemoPocket = DEMO_POCKET): Form {
   const { depth, taper, cornerRadius: fillet } = pocket;
   const n = 900;
-  const span = 3.2e-3;
-  const floor = dents(n, span, 34000, pocket.seed);
-  const wall = dents(n, span, 22000, pocket.seed + 1);
+  const span = 1.23 * pocket.diameter;
+  const perArea = (pocket.diameter / DEMO_POCKET.diameter) ** 2;
+  const floor = dents(n, span, Math.round(34000 * perArea), pocket.seed);
+  const wall = dents(n, span, Math.round(22000 * perArea), pocket.seed + 1);
   const chips = rimChips(pocket, 150, 54e-6);
   const bySector: Chip[][] = Array.from({ length: 64 }, () => []);
   const sector = (x: number, y: number): number => Math.floor(((Math.atan2(y, x) / Math.PI + 1) / 2) * 64) & 63;

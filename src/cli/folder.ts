@@ -1,0 +1,111 @@
+import { lstat, mkdir, readdir, rename, rm, writeFile } from 'node:fs/promises';
+import { dirname, join, resolve } from 'node:path';
+import { ARTEFACT_NAMES, type Artefact } from '#src/run/protocol.ts';
+import { CommandError, EXIT, reasonOf } from './exit.ts';
+
+/** Left beside the artefacts: the job as it was given; and while the folder is not whole, a word on why. */
+const JOB_COPY = 'job.json';
+const UNFINISHED = 'unfinished.txt';
+const OWN_FILES: ReadonlySet<string> = new Set([...ARTEFACT_NAMES, JOB_COPY, UNFINISHED]);
+
+/** A folder for results that is whole or not there: written beside itself and renamed. */
+export interface ResultFolder {
+  readonly path: string;
+  readonly partial: string;
+  /** Puts the finished files in place; an older result goes only now. */
+  finish(artefacts: readonly Artefact[]): Promise<void>;
+  /** Leaves the partial folder with a word on why. */
+  leave(word: string): Promise<void>;
+  /** Takes the partial folder away again. */
+  discard(): Promise<void>;
+}
+
+const cannot = (what: string, error: unknown) =>
+  new CommandError(EXIT.badInput, `${what}: ${reasonOf(error)}. Choose another folder with --out.`);
+
+async function statusOf(path: string) {
+  try {
+    return await lstat(path);
+  } catch (error) {
+    if ((error as NodeJS.ErrnoException).code === 'ENOENT') return undefined;
+    throw cannot(`${path} cannot be used`, error);
+  }
+}
+
+/** Refuses a folder that holds anything a cut did not write: replacing it would delete somebody's files. */
+async function checkReplaceable(path: string): Promise<void> {
+  const foreign = (await readdir(path)).filter((name) => !OWN_FILES.has(name));
+  if (foreign.length === 0) return;
+  const shown = foreign.slice(0, 3).join(', ') + (foreign.length > 3 ? ', ...' : '');
+  throw new CommandError(
+    EXIT.badInput,
+    `${path} holds files that no cut wrote (${shown}), so it is not replaced. Choose another folder with --out.`,
+  );
+}
+
+async function checkTarget(path: string, force: boolean): Promise<void> {
+  const status = await statusOf(path);
+  if (!status) return;
+  if (!status.isDirectory()) {
+    throw new CommandError(EXIT.badInput, `${path} exists and is not a folder. Choose another folder with --out.`);
+  }
+  if (!force) {
+    throw new CommandError(EXIT.badInput, `${path} exists already. Give another --out, or --force to replace it.`);
+  }
+  await checkReplaceable(path);
+}
+
+/**
+ * Makes `OUT.partial/` ready to be written to, with a copy of the job in it.
+ * @throws CommandError when OUT exists (without force), holds somebody's files, or cannot be written
+ */
+export async function openFolder(out: string, jobText: string, force: boolean): Promise<ResultFolder> {
+  const path = resolve(out);
+  const partial = `${path}.partial`;
+  await checkTarget(path, force);
+  // what an interrupted run left is ours to replace, nothing else is
+  const before = await statusOf(partial);
+  if (before?.isDirectory()) await checkReplaceable(partial);
+  try {
+    await rm(partial, { recursive: true, force: true });
+    await mkdir(dirname(path), { recursive: true });
+    await mkdir(partial);
+    await writeFile(join(partial, JOB_COPY), jobText);
+    await writeFile(join(partial, UNFINISHED), 'This cut is running, or was ended without notice.\n');
+  } catch (error) {
+    await rm(partial, { recursive: true, force: true }).catch(() => {});
+    throw cannot(`${partial} cannot be written`, error);
+  }
+  const discard = () => rm(partial, { recursive: true, force: true });
+  return {
+    path,
+    partial,
+    discard,
+    async finish(artefacts) {
+      try {
+        for (const { name, bytes } of artefacts) await writeFile(join(partial, name), bytes);
+        await rm(join(partial, UNFINISHED));
+        await replace(partial, path);
+      } catch (error) {
+        await discard().catch(() => {});
+        throw cannot(`The result cannot be written to ${path}`, error);
+      }
+    },
+    async leave(word) {
+      await writeFile(join(partial, UNFINISHED), `${word}\n`);
+    },
+  };
+}
+
+async function replace(partial: string, path: string): Promise<void> {
+  if (!(await statusOf(path))) return rename(partial, path);
+  const old = `${path}.${process.pid}.old.partial`;
+  await rename(path, old);
+  try {
+    await rename(partial, path);
+  } catch (error) {
+    await rename(old, path);
+    throw error;
+  }
+  await rm(old, { recursive: true, force: true });
+}
