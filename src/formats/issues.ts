@@ -123,6 +123,11 @@ function pathsByName(
   return into;
 }
 
+/** A context with every name of its schema. */
+interface NamedContext extends IssueContext {
+  readonly names: ReadonlyMap<string, string>;
+}
+
 function problem(context: IssueContext, path: readonly PropertyKey[], message: string, allowed: string): Problem {
   const text = pathText(path);
   const place = context.places.get(text) ?? context.places.get(pathText(path.slice(0, -1)));
@@ -136,7 +141,7 @@ function problem(context: IssueContext, path: readonly PropertyKey[], message: s
   };
 }
 
-function unknownField(context: IssueContext, parent: readonly PropertyKey[], key: string): Problem {
+function unknownField(context: NamedContext, parent: readonly PropertyKey[], key: string): Problem {
   const path = [...parent, key];
   const later = own(context.later.fields, pathText(path));
   if (later !== undefined) return problem(context, path, later, 'nothing yet');
@@ -146,7 +151,7 @@ function unknownField(context: IssueContext, parent: readonly PropertyKey[], key
   const allowed = known.length > 0 ? `the fields ${known.join(', ')}` : 'nothing';
   const say = (what: string) => problem(context, path, `There is no field of this name here. ${what}`, allowed);
   const near = nearestName(key, known);
-  const elsewhere = pathsByName(context.schema);
+  const elsewhere = context.names;
   const exact = elsewhere.get(key);
   if (exact !== undefined) return say(`It belongs at ${exact}.`);
   if (near !== undefined) return say(`Did you mean ${near}?`);
@@ -200,16 +205,31 @@ function suggestWord(value: unknown, field: z.ZodEnum | z.ZodDiscriminatedUnion 
   return near === undefined ? 'enter one of the allowed words.' : `did you mean ${near}?`;
 }
 
+/** Unknown fields of one object that are each explained; of more than these only the number is told. */
+const MOST_EXPLAINED = 30;
+
+function unknownFields(context: NamedContext, parent: readonly PropertyKey[], keys: readonly string[]): Problem[] {
+  const explained = keys.slice(0, MOST_EXPLAINED).map((key) => unknownField(context, parent, key));
+  const more = keys.length - explained.length;
+  if (more === 0) return explained;
+  const path = [...parent, keys[MOST_EXPLAINED] as string];
+  return [...explained, problem(context, path, `${more} fields here, from this one on, have unknown names. Take them out.`, '')];
+}
+
 /** Turns what the schema library reports into problems, each with path, value, allowed range and what to do. */
 export function problemsOf(issues: readonly Issue[], context: IssueContext): Problem[] {
+  return explain(issues, { ...context, names: pathsByName(context.schema) });
+}
+
+function explain(issues: readonly Issue[], context: NamedContext): Problem[] {
   return issues.flatMap((issue) => {
-    if (issue.code === 'unrecognized_keys') return issue.keys.map((key) => unknownField(context, issue.path, key));
+    if (issue.code === 'unrecognized_keys') return unknownFields(context, issue.path, issue.keys);
     if (issue.code === 'invalid_union' && issue.errors.length > 0) {
       const deeper = (list: readonly Issue[]) =>
         list.some((one) => one.path.length > 0 || one.code === 'unrecognized_keys');
-      const inner = issue.errors.find(deeper) ?? issue.errors[0];
-      return problemsOf(
-        (inner ?? []).map((one) => ({ ...one, path: [...issue.path, ...one.path] })),
+      const inner = issue.errors.find(deeper) ?? issue.errors[0] ?? [];
+      return explain(
+        inner.map((one) => ({ ...one, path: [...issue.path, ...one.path] })),
         context,
       );
     }

@@ -242,6 +242,7 @@ function drawNominal(work: Work): void {
   const places = [14, 46, 60, -8].map((dy) => ({ x, y: y + dy }));
   const right = xAt(work, drawing.centre + nominal.entrySize / 2) + 14;
   for (const dy of [-14, -30, 12, -60, -90, 30]) places.push({ x: right, y: y + dy });
+  if (!frame.broken) places.push({ x, y: frame.bottom + 16 });
   if (isThin(frame)) places.unshift({ x, y: frame.bottom + 15 }, { x, y: frame.bottom + 46 });
   askLabel(sheet, text, places, { colour: sheet.palette.ink2 });
 }

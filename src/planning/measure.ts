@@ -15,6 +15,8 @@ import { rimProfile, type SectionCurves, sectionAt, surfaceField, wallPoints } f
 const TAPER_LEVELS = 25;
 /** Floor heights left out of the corner's profile above the mean floor, in mean chip depths and in voxels. */
 const FLOOR_PEAKS = 4;
+/** Standard error of the corner's least-squares arc, over its radius, past which the touching fillet is taken. */
+const ARC_ERROR = 0.15;
 /** Share of the depth over which the first and the last rate are averaged. */
 const RATE_SPAN = 0.1;
 
@@ -202,7 +204,10 @@ function cornerOf(cut: Cut, bricks: BrickField, surface: HeightField, depth: num
   r.push(...floor.r);
   z.push(...floor.z);
   try {
-    return cornerRadius({ x: Float64Array.from(r), y: Float64Array.from(z) }).radius;
+    const corner = cornerRadius({ x: Float64Array.from(r), y: Float64Array.from(z) });
+    // on few voxels the free arc is weak; the fillet that touches wall and floor is steadier
+    const sure = corner.radiusError < ARC_ERROR * corner.radius;
+    return sure ? corner.radius : corner.tangentRadius;
   } catch (problem) {
     if (problem instanceof RangeError) return Number.NaN;
     throw problem;

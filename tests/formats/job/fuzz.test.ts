@@ -119,6 +119,14 @@ describe('reading a job never throws and always explains itself', () => {
     expect(judged(' '.repeat(16_000_001)).problems?.[0]?.message).toMatch(/too long/);
   });
 
+  test('however many fields there are that no job has', () => {
+    const many = Object.fromEntries(Array.from({ length: 20000 }, (_, k) => [`field${k}`, k]));
+    const { problems } = judged(JSON.stringify({ ...whole, machine: { ...whole.machine, ...many } }));
+    // thirty explained, the rest counted
+    expect(problems).toHaveLength(30 + 1);
+    expect(problems?.at(-1)?.message).toMatch(/19970 fields here, from this one on/);
+  });
+
   test('when a value is judged that is no text at all', () => {
     fc.assert(
       fc.property(fc.anything(), (value) => {

@@ -4,7 +4,7 @@ import { cavityBounds, fitView, RISE, type SectionView, toPicture } from '#src/p
 import type { BrickField } from '#src/voxel/bricks.ts';
 import { boxPocket, bricksOf, cone, type FieldSize, sphereCap } from '../../support/synthetic-bricks.ts';
 
-const SIZE: FieldSize = { nx: 160, ny: 160, nz: 80, pitch: 10e-6 };
+const SIZE: FieldSize = { nx: 128, ny: 128, nz: 72, pitch: 10e-6 };
 const MARGINS = { left: 30, right: 30, top: 20, bottom: 40 };
 
 function viewOf(field: BrickField): SectionView {
@@ -13,9 +13,9 @@ function viewOf(field: BrickField): SectionView {
   return fitView({ width: 400, height: 300 }, bounds, MARGINS, 0);
 }
 
-/** Every third pixel's middle. */
+/** Every fourth pixel's, every third row's middle. */
 function* pixels(view: SectionView): Generator<readonly [number, number]> {
-  for (let py = 0.5; py < view.height; py += 3) for (let px = 0.5; px < view.width; px += 3) yield [px, py];
+  for (let py = 0.5; py < view.height; py += 3) for (let px = 0.5; px < view.width; px += 4) yield [px, py];
 }
 
 const RADIUS = 0.5e-3;
@@ -35,7 +35,7 @@ test('every line of sight into half a ball ends on the ball, and the point maps 
     const back = toPicture(view, at.x, at.y, at.z);
     expect(Math.hypot(back.px - px, back.py - py)).toBeLessThan(1e-6);
   }
-  expect(seen).toBeGreaterThan(2000);
+  expect(seen).toBeGreaterThan(1500);
 });
 
 // The smoothed gradient reaches 2 voxels, a bend of 2 pitch / R = 2.3 degrees, and a ramp one voxel wide sampled once a

@@ -12,7 +12,7 @@ const SIZE: FieldSize = { nx: 160, ny: 160, nz: 56, pitch: 10e-6 };
 const [LENGTH, WIDTH, DEPTH] = [1.0e-3, 0.8e-3, 0.4e-3];
 const BOX = bricksOf(boxPocket(LENGTH, WIDTH, DEPTH), SIZE);
 const BOUNDS = { xMin: -LENGTH / 2, xMax: LENGTH / 2, yMin: -WIDTH / 2, yMax: WIDTH / 2, depth: DEPTH };
-const VIEW = fitView({ width: 300, height: 220 }, BOUNDS, { left: 40, right: 40, top: 20, bottom: 40 }, 0);
+const VIEW = fitView({ width: 200, height: 150 }, BOUNDS, { left: 25, right: 25, top: 15, bottom: 30 }, 0);
 
 function rgbAt(data: Uint8ClampedArray, width: number, px: number, py: number): number[] {
   const at = 4 * (Math.floor(py) * width + Math.floor(px));
