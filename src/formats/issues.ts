@@ -213,7 +213,10 @@ function unknownFields(context: NamedContext, parent: readonly PropertyKey[], ke
   const more = keys.length - explained.length;
   if (more === 0) return explained;
   const path = [...parent, keys[MOST_EXPLAINED] as string];
-  return [...explained, problem(context, path, `${more} fields here, from this one on, have unknown names. Take them out.`, '')];
+  return [
+    ...explained,
+    problem(context, path, `${more} fields here, from this one on, have unknown names. Take them out.`, ''),
+  ];
 }
 
 /** Turns what the schema library reports into problems, each with path, value, allowed range and what to do. */

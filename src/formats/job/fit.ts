@@ -1,14 +1,14 @@
 import { nearest, type Outline, type OutlineSpec, pointAt, smallestFeature } from '#src/base/outline.ts';
 
-const SAMPLES = 720;
+const SAMPLES = 240;
 
-/** Points along an outline, and just before and after the corners that the even spacing would step over (m). */
+/** Points along an outline, corners and the middles of arcs among them, which the even spacing would step over (m). */
 function samplePoints(outline: Outline): { x: number; y: number }[] {
   const points = Array.from({ length: SAMPLES }, (_, k) => pointAt(outline, (k / SAMPLES) * outline.perimeter));
   for (const loop of outline.loops) {
     let s = loop.start;
     for (const segment of loop.segments) {
-      points.push(pointAt(outline, s));
+      points.push(pointAt(outline, s), pointAt(outline, s + segment.length / 2));
       s += segment.length;
     }
   }

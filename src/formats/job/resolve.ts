@@ -112,7 +112,7 @@ export function resolveJob(file: JobFile, library: Library, options: ResolveOpti
     toolArea: tool.area,
     edgeRadius: draft.edgeRadius,
     predictedOvercut: overcut ?? 0,
-    sideGap: sideGap(cavity, tool),
+    sideGap: overcut !== undefined && draft.defaultsUsed.includes('tool.outline') ? overcut : sideGap(cavity, tool),
     staticLoad,
     pressure: staticLoad / tool.area,
     runout: draft.runout,
