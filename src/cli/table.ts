@@ -12,9 +12,10 @@ export function columns(rows: readonly (readonly string[])[], right: readonly nu
   return rows.map((row) => `  ${line(row).trimEnd()}`).join('\n');
 }
 
-/** A number as people read it: three digits or so, no powers of ten below ten million. */
+/** A number as people read it: a few digits, millions in words, powers of ten only for the very small. */
 export function plain(value: number, digits: number): string {
-  if (value !== 0 && (Math.abs(value) >= 1e7 || Math.abs(value) < 1e-4)) return value.toExponential(digits - 1);
+  if (Math.abs(value) >= 1e6) return `${formatNumber(value / 1e6, digits)} million`;
+  if (value !== 0 && Math.abs(value) < 1e-4) return value.toExponential(digits - 1);
   return formatNumber(value, digits);
 }
 

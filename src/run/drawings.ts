@@ -4,7 +4,7 @@ import type { Limits, ResolvedJob } from '#src/formats/job/resolve.ts';
 import { formatNumber } from '#src/formats/numbers.ts';
 import { encodePng } from '#src/formats/png.ts';
 import { laidOver, type Rasteriser } from '#src/formats/raster.ts';
-import { taperOf } from '#src/metrology/taper.ts';
+import { stockLibrary } from '#src/formats/stock-library.ts';
 import { type CutCurve, cutCurves, mainCurve, splitCurve } from '#src/picture/cavity/contour.ts';
 import { crackStrokes } from '#src/picture/cavity/cracks.ts';
 import { makeGrid } from '#src/picture/cavity/grid.ts';
@@ -37,9 +37,13 @@ const PICTURE_UNIT = 1.6;
 
 const text = (bytes: string) => new TextEncoder().encode(bytes);
 
-/** Abrasive and grade as the job names them. */
+const nameIn = (records: readonly { readonly id: string; readonly name: string }[], id: string | undefined) =>
+  records.find((record) => record.id === id)?.name;
+
+/** Abrasive and grade in words. */
 export function gritText({ file, conditions }: ResolvedJob): string {
-  const { abrasive, grit } = file.slurry;
+  const { grit } = file.slurry;
+  const abrasive = nameIn(stockLibrary.abrasives, file.slurry.abrasive) ?? file.slurry.abrasive;
   const size = grit ?? `d50 ${formatNumber(conditions.grit.massMedian / METRES_PER_MICROMETRE, 3)} \u00b5m`;
   return `${abrasive} ${size}`;
 }
@@ -49,7 +53,7 @@ function captionOf({ job, cut }: Drawable): string[] {
   const { conditions, file } = job;
   const { magnification, floor } = cut.model;
   const amplitude = formatNumber(conditions.amplitude / METRES_PER_MICROMETRE, 3);
-  const work = file.workpiece.material ?? 'a material of the job\u2019s own';
+  const work = nameIn(stockLibrary.materials, file.workpiece.material) ?? 'a material of the job\u2019s own';
   const voxel = formatNumber(floor.dx / METRES_PER_MICROMETRE, 3);
   const magnified = magnification > 1 ? `, lateral magnification ${formatNumber(magnification, 3)}` : '';
   return [
@@ -92,19 +96,17 @@ function limitTexts(limits: Limits, nominal: number): SectionLimits {
   };
 }
 
-/** The annotated half-section as SVG; null where the cut is too shallow to have walls. */
+/** Whether the cavity has the sizes that drawings are dimensioned with: one all in chips has none. */
+export function isMeasured({ measures }: Drawable): boolean {
+  return [measures.entrySize[0], measures.floorSize[0], measures.taper].every(Number.isFinite);
+}
+
+/** The annotated half-section as SVG; null where the cut is too shallow to have walls that can be measured. */
 export function sectionSvg(drawable: Drawable, curve: CutCurve | undefined): Uint8Array<ArrayBuffer> | null {
   const { job, cut, measures } = drawable;
-  const split = curve && splitCurve(curve, measures.depth);
+  const split = curve && isMeasured(drawable) && splitCurve(curve, measures.depth);
   if (!split) return null;
-  const { z, left, right } = measures.section;
   const centre = cut.model.x0 + ((cut.model.floor.nx - 1) / 2) * cut.model.floor.dx;
-  const side = (at: Float64Array, sign: number) =>
-    taperOf(
-      z,
-      at.map((x) => 2 * sign * (x - centre)),
-      measures.depth,
-    ).halfAngle;
   const chipAt = pointAt(cut.model.outline, measures.chipWidth.at);
   const tool = toolOf(drawable);
   const { largest } = measures.chipWidth;
@@ -118,8 +120,8 @@ export function sectionSvg(drawable: Drawable, curve: CutCurve | undefined): Uin
     depth: measures.depth,
     entrySize: measures.entrySize[0] as number,
     floorSize: measures.floorSize[0] as number,
-    taperLeft: side(left, -1),
-    taperRight: side(right, 1),
+    taperLeft: measures.taper,
+    taperRight: measures.taper,
     cornerRadius: measures.cornerRadius,
     ...(largest > 0 && {
       chip: { width: largest, depth: measures.chipDepth.largest, side: chipAt.x < centre ? 'left' : 'right' },
@@ -138,7 +140,7 @@ export function traceSvg({ job }: Drawable, floor: FloorTexture): Uint8Array<Arr
   const drawn = drawTrace({
     title: `Floor trace, ${titleOf(job)}`,
     profile: floor.trace,
-    mean: floor.trace.z.reduce((sum, height) => sum + height, 0) / floor.trace.z.length,
+    mean: 0,
     figures: [
       { symbol: 'Ra', value: parameters.ra, kind: 'length' },
       { symbol: 'Rq', value: parameters.rq, kind: 'length' },
@@ -186,8 +188,8 @@ function overlaySvg(drawable: Drawable, view: SectionView, behind: number, curve
 }
 
 /**
- * The half-section as a PNG with the size of its pixels on the cut face. Yields between bounded pieces of work; null where
- * nothing was removed.
+ * The half-section as a PNG with the size of its pixels on the cut face, dimensioned where the cavity could be measured.
+ * Yields between bounded pieces of work; null where nothing was removed.
  */
 export function* cavityPng(
   drawable: Drawable,
@@ -201,9 +203,11 @@ export function* cavityPng(
   const natural = naturalHeight(PICTURE_WIDTH, bounds, margins);
   const view = fitView({ width: PICTURE_WIDTH, height: Math.min(natural, PICTURE_HEIGHT) }, bounds, margins, 0);
   const under = yield* renderSteps(bricks, view, { unit: PICTURE_UNIT, thickness: job.stock.thickness });
-  const over = rasteriser.rasterise(overlaySvg(drawable, view, bounds.yMax, curve), PICTURE_WIDTH);
+  const marked = isMeasured(drawable)
+    ? laidOver(under, rasteriser.rasterise(overlaySvg(drawable, view, bounds.yMax, curve), PICTURE_WIDTH))
+    : under;
   yield 1;
-  const bytes = encodePng(laidOver(under, over), {
+  const bytes = encodePng(marked, {
     pixel: view.pixel,
     text: { Title: titleOf(job), Software: `Spallwright ${version}`, Comment: captionOf(drawable).join(' ') },
   });

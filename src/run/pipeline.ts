@@ -20,7 +20,7 @@ import { serialRunner } from '#src/voxel/runner.ts';
 import { buildBricks } from '#src/voxel/solid.ts';
 import { SCALAR } from '#src/voxel/state.ts';
 import { allocateShared, startCrew } from './crew.ts';
-import { cavityPng, type Drawable, sectionCurve, sectionSvg, traceSvg } from './drawings.ts';
+import { cavityPng, type Drawable, isMeasured, sectionCurve, sectionSvg, traceSvg } from './drawings.ts';
 import { cutFigures, estimateFigures } from './figures.ts';
 import { cutSpecOf, openJob, takenDefaults } from './jobs.ts';
 import type { Port } from './port.ts';
@@ -103,6 +103,11 @@ const NOTHING_REMOVED: ResultWarning = {
   message: 'This setting removes nothing. Raise the load or the amplitude, or take a coarser grit.',
 };
 
+const NOT_MEASURED: ResultWarning = {
+  path: 'cavity.depthMm',
+  message: 'The wall is too low to be measured below its edge chips: no entry size, and the section is not drawn.',
+};
+
 /** Estimates a job. */
 export function estimateJob(request: JobRequest): Estimated | Refused {
   const opened = openJob(request);
@@ -144,7 +149,8 @@ export async function cutJob(request: JobRequest, context: CallContext, tools: C
   const hash = cutHash(cut);
   const drawable = await measure(job, cut, context);
   const figures = cutFigures(drawable.measures, drawable.texture);
-  const result = resultOf(job, figures, resultWarnings(warnings, []), {
+  const more = isMeasured(drawable) ? [] : [NOT_MEASURED];
+  const result = resultOf(job, figures, resultWarnings(warnings, more), {
     voxelUm: cut.model.floor.dx / METRES_PER_MICROMETRE,
     magnification: cut.model.magnification,
   });

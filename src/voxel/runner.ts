@@ -1,4 +1,4 @@
-import { type Field, type Kernel, type KernelTables, OUT_OF_REACH, type Rim, STEP } from './kernels/contract.ts';
+import { type Field, type Kernel, type KernelTables, type Rim, STEP } from './kernels/contract.ts';
 import type { CutModel } from './model.ts';
 import type { CutState } from './state.ts';
 
@@ -61,14 +61,4 @@ export function serialRunner(kernel: Kernel, model: CutModel, state: CutState): 
       for (const tasks of work.colours) for (const task of tasks) runTask(kernel, work, task);
     },
   };
-}
-
-/** True where a tile of the floor can never be hit: no column within reach. */
-export function isIdle(field: Field, tile: number): boolean {
-  const per = field.tile / field.block;
-  const blocks = per * per;
-  for (let k = tile * blocks; k < (tile + 1) * blocks; k++) {
-    if ((field.bounds[k] as number) > OUT_OF_REACH) return false;
-  }
-  return true;
 }

@@ -22,6 +22,14 @@ import { type Footprint, stampChip, stampDent } from './stamp.ts';
 const LN2 = Math.LN2;
 const TWO_TO_MINUS_32 = 2.3283064365386963e-10;
 
+/** True where every column of a tile is out of reach or passed by the tool: heights only fall, so it stays so. */
+function isIdle(field: Field, tile: number): boolean {
+  const { bounds } = field;
+  const blocks = (field.tile / field.block) ** 2;
+  for (let k = tile * blocks; k < (tile + 1) * blocks; k++) if ((bounds[k] as number) > OUT_OF_REACH) return false;
+  return true;
+}
+
 /** The fast kernel: float32 fields, float64 arithmetic, everything inline that runs once per candidate. */
 export function createFastKernel(): Kernel {
   const random = new Uint32Array(4);
@@ -146,6 +154,7 @@ export function createFastKernel(): Kernel {
     const { coefficients, thresholds, logs, tail, grain, detach } = tables;
     const base = tile * SUMS;
     sums.fill(0, base, base + SUMS);
+    if (isIdle(field, tile)) return;
     if (step[STEP.renew] === 1) renew(field, tables, step, tile);
 
     const face = step[STEP.face] as number;
