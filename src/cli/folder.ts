@@ -1,4 +1,4 @@
-import { lstat, mkdir, readdir, rename, rm, writeFile } from 'node:fs/promises';
+import { lstat, mkdir, readdir, rename, rm, stat, writeFile } from 'node:fs/promises';
 import { dirname, join, resolve } from 'node:path';
 import { ARTEFACT_NAMES, type Artefact } from '#src/run/protocol.ts';
 import { CommandError, EXIT, reasonOf } from './exit.ts';
@@ -56,10 +56,21 @@ async function checkTarget(path: string, force: boolean): Promise<void> {
 }
 
 /**
+ * Makes a folder and those above it that are missing. One by one: Node's own recursive way never ends on file systems that
+ * answer "does not exist" to making a folder (found on /proc with Node 20).
+ */
+async function makeFolder(path: string): Promise<void> {
+  const parent = dirname(path);
+  if (parent !== path && !(await stat(parent).catch(() => undefined))) await makeFolder(parent);
+  await mkdir(path);
+}
+
+/**
  * Makes `OUT.partial/` ready to be written to, with a copy of the job in it.
  * @throws CommandError when OUT exists (without force), holds somebody's files, or cannot be written
  */
 export async function openFolder(out: string, jobText: string, force: boolean): Promise<ResultFolder> {
+  if (out === '') throw new CommandError(EXIT.badInput, '--out is empty. Name a folder for the result.');
   const path = resolve(out);
   const partial = `${path}.partial`;
   await checkTarget(path, force);
@@ -68,8 +79,7 @@ export async function openFolder(out: string, jobText: string, force: boolean): 
   if (before?.isDirectory()) await checkReplaceable(partial);
   try {
     await rm(partial, { recursive: true, force: true });
-    await mkdir(dirname(path), { recursive: true });
-    await mkdir(partial);
+    await makeFolder(partial);
     await writeFile(join(partial, JOB_COPY), jobText);
     await writeFile(join(partial, UNFINISHED), 'This cut is running, or was ended without notice.\n');
   } catch (error) {

@@ -36,7 +36,7 @@ function commandLine(finish: (code: number) => void): Command {
     )
     .version(version, '--version', 'print the version')
     .helpOption('--help', 'print this help')
-    .helpCommand(false)
+    .helpCommand('help [command]', 'print the help of a command')
     .showHelpAfterError('Try: spallwright --help')
     .addHelpText('after', EXAMPLES);
 

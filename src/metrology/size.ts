@@ -115,7 +115,8 @@ function polygonSizes(points: PlanePoints, spec: Extract<OutlineSpec, { kind: 'r
 /**
  * Sizes of a wall contour at one depth (m), in the order of `nominalSizes`: circle and ring (outer, inner) by
  * least-squares diameter; rectangle and the width of a slot by least-squares width between opposite faces; the length
- * of a slot from least-squares circles on its two ends (nine tenths of their radius); regular polygon by one least-squares polygon, across flats.
+ * of a slot from least-squares circles on its two ends (nine tenths of their radius); regular polygon by one least-squares polygon, across flats; a path
+ * by its overall length and width.
  * Corners (nominal radius and a tenth of the straight face) are left out. Points in the outline's own frame, in any
  * order; the contour may be shifted or turned a little against it. A size whose face or circle has fewer than four points
  * is NaN.
@@ -135,7 +136,21 @@ export function sizesAtDepth(points: PlanePoints, spec: OutlineSpec): number[] {
       return slotSizes(points, spec);
     case 'regularPolygon':
       return polygonSizes(points, spec);
+    case 'path':
+      return [extentOf(points.x), extentOf(points.y)];
   }
+}
+
+/** Length covered by the points along one axis; NaN with too few. */
+function extentOf(values: Float64Array): number {
+  if (values.length < FEWEST_POINTS) return Number.NaN;
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (const value of values) {
+    low = Math.min(low, value);
+    high = Math.max(high, value);
+  }
+  return high - low;
 }
 
 function diameterOf(points: PlanePoints): number {

@@ -138,6 +138,22 @@ function overlapOf(sums: GapSums, chipDepth: number, loadHeight: number): number
   return chipDepth > 0 ? Math.min(1, overlapFactor * pow(chipDepth / loadHeight, overlapExponent)) : 1;
 }
 
+/** Roughness and overlap of the floor that forms under a tool at a given gap, from a neighbouring roughness. */
+export function chipStateAt(sums: GapSums, gap: number, guess: number): { roughness: number; overlap: number } {
+  let roughness = guess;
+  let loadHeight = 0;
+  let depths = { chip: 0, crater: 0 };
+  for (let i = 0; i < ITERATIONS; i++) {
+    loadHeight = loadHeightAt(sums, gap, roughness);
+    depths = depthsAt(sums, gap, roughness);
+    const wanted = sums.rows.conditions.constants.floorRoughness * Math.sqrt(depths.crater * loadHeight);
+    const settled = Math.abs(wanted - roughness) <= 1e-3 * wanted;
+    roughness = settled ? wanted : 0.4 * roughness + 0.6 * wanted;
+    if (settled) break;
+  }
+  return { roughness, overlap: overlapOf(sums, depths.chip, loadHeight) };
+}
+
 /**
  * Steady floor under a face pressure: the tool height carries the pressure on a Gaussian floor whose own roughness is
  * Sq = factor sqrt(b l), b the crater depth and l the load height there. Fixed point by secants. The overlap and

@@ -16,7 +16,7 @@ import { shallowJobText, smallJobText } from '../support/jobs.ts';
 const built = (name: string) => pathToFileURL(`dist/${name}`);
 if (!existsSync(built('tile.worker.js'))) throw new Error('dist is missing: run "npm run build" first');
 
-const opened = openJob({ text: shallowJobText(0.05), source: 'test' });
+const opened = openJob({ text: shallowJobText(0.03), source: 'test' });
 if (opened.state === 'refused') throw new Error(JSON.stringify(opened.problems));
 const spec: CutSpec = cutSpecOf(opened.job);
 

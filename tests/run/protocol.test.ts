@@ -40,8 +40,16 @@ function clockwork() {
 
 type Clockwork = ReturnType<typeof clockwork>;
 
+/** Handlers as tests write them: what they answer is told by the test. */
+type TestHandlers = {
+  readonly [N in keyof Handlers]: (
+    request: JobRequest,
+    context: CallContext,
+  ) => ReturnType<Handlers[N]> | Promise<never>;
+};
+
 /** An engine behind in-process ports, one pair for every time it is started. */
-function engineOf(handlers: Partial<Handlers>, clock: Clockwork) {
+function engineOf(handlers: Partial<TestHandlers>, clock: Clockwork) {
   const started: PortPair[] = [];
   const engine = createClient(() => {
     const pair = portPair();
@@ -95,7 +103,7 @@ describe('a call', () => {
   // A name that is no request is refused, inherited names of objects included.
   test('with an unknown name is refused', async () => {
     const { engine } = engineOf({}, clockwork());
-    await expect(engine.call('toString' as never, request)).rejects.toThrow('knows no request "toString"');
+    await expect(engine.call('toString' as never, request as never)).rejects.toThrow('knows no request "toString"');
   });
 
   // Answers find their own calls whatever the order they come in.

@@ -55,6 +55,8 @@ export function outlineFileOf(spec: OutlineSpec): OutlineFile {
       };
     case 'ring':
       return { kind: 'ring', outerDiameterMm: mm(spec.outerDiameter), innerDiameterMm: mm(spec.innerDiameter) };
+    case 'path':
+      throw new RangeError('a job file of this version has no outline drawn as a path');
   }
 }
 
