@@ -1,4 +1,4 @@
-import { METRES_PER_MILLIMETRE, MICROMETRES_PER_METRE, MILLIMETRES_PER_METRE } from '#src/base/units.ts';
+import { MICROMETRES_PER_METRE, MILLIMETRES_PER_METRE } from '#src/base/units.ts';
 import { DEFAULT_PRESSURE, DEFAULTS } from '#src/formats/job/defaults.ts';
 import type { PredictOvercut } from '#src/formats/job/draft.ts';
 import { outlineText } from '#src/formats/job/outline-file.ts';
@@ -116,6 +116,3 @@ export function takenDefaults(job: ResolvedJob): TakenDefault[] {
     return { path, value: own[path] ?? `${plain ?? ''} ${unit}`.trim() };
   });
 }
-
-/** A figure of the job's file in mm, for headings. */
-export const depthMmOf = (job: ResolvedJob) => job.depth / METRES_PER_MILLIMETRE;
