@@ -17,6 +17,8 @@ const TAPER_LEVELS = 25;
 const FLOOR_PEAKS = 4;
 /** Standard error of the corner's least-squares arc, over its radius, past which the touching fillet is taken. */
 const ARC_ERROR = 0.15;
+/** Depth, in edge radius plus largest grain, below which the fillet leaves too little wall for a taper. */
+const TAPER_NEEDS = 4;
 /** Share of the depth over which the first and the last rate are averaged. */
 const RATE_SPAN = 0.1;
 
@@ -142,7 +144,7 @@ function unchippedWall(cut: Cut, bricks: BrickField, z: number): PlaneCurve {
     const rim = state.walls[near.loop]?.rim;
     const start = model.outline.loops[near.loop]?.start ?? 0;
     const cell = rim ? Math.min(rim.n - 1, Math.floor((near.s - start) / rim.spacing)) : 0;
-    if (rim && (rim.chips[cell] as number) > z - bricks.pitch) continue;
+    if (rim && (rim.chips[cell] as number) > Math.max(0, z - bricks.pitch)) continue;
     keep.push(n);
   }
   const pick = (values: Float64Array) => Float64Array.from(keep, (n) => values[n] as number);
@@ -162,7 +164,10 @@ function mean(values: readonly number[]): number {
   return finite.length > 0 ? finite.reduce((sum, v) => sum + v, 0) / finite.length : Number.NaN;
 }
 
+/** NaN in a cavity so shallow that the fillet takes most of its wall. */
 function meanTaper(cut: Cut, bricks: BrickField, cavity: OutlineSpec, depth: number): number {
+  const { edgeRadius, conditions } = cut.model.spec;
+  if (depth < TAPER_NEEDS * (edgeRadius + conditions.grit.largest)) return Number.NaN;
   const depths = Float64Array.from({ length: TAPER_LEVELS }, (_, k) => (0.1 + (0.8 * k) / (TAPER_LEVELS - 1)) * depth);
   const bySize = nominalSizes(cavity).map(() => new Float64Array(TAPER_LEVELS));
   depths.forEach((z, k) => {

@@ -46,7 +46,10 @@ export function cutFigures(measures: CutMeasures, texture: FloorTexture | null):
     floorSizeMm: figure(m.floorSize.map(mm), 'not known: too little wall was found at this depth'),
     overcutEntryUm: figure(um(m.overcutEntry), 'not known: no entry size'),
     overcutFloorUm: figure(um(m.overcutFloor), 'not known: no floor size'),
-    taperDeg: figure(m.taper * DEGREES_PER_RADIAN, 'not known: too little wall was found'),
+    taperDeg: figure(
+      m.taper * DEGREES_PER_RADIAN,
+      'not known: the cavity is too shallow, its fillet leaves too little wall',
+    ),
     cornerRadiusUm: figure(um(m.cornerRadius), 'not known: the corner is too shallow or the voxel too coarse'),
     floorFlatnessUm: figure(um(m.floorFlatness), 'not known: the floor is smaller than the margin left out', margin),
     floorRaUm: figure(um(texture?.ra ?? Number.NaN), noTrace, stated),
