@@ -4,8 +4,12 @@ import type { EdgeChip } from './edge-chip.ts';
 import { engagedShare, type FloorState, loadQuantiles, overFloor, steadyFloor } from './floor.ts';
 import { freeImpact } from './free-impact.ts';
 import { contactRows, type GapSums, gapSums, TERM } from './gap-sums.ts';
+import type { SlurryConstants } from './process/constants.ts';
+import type { FaceShape } from './process/face.ts';
+import { throughDepth } from './process/through-depth.ts';
 import type { Conditions } from './records.ts';
 import { rimChips } from './rim.ts';
+import type { Carrier } from './slurry/viscosity.ts';
 import { faceWearRate, wearRatio } from './tool-wear.ts';
 import { gapAfter, type WallLaw, wallHits, wallLaw } from './wall.ts';
 
@@ -25,6 +29,15 @@ export interface EstimateSetting {
   readonly runout: number;
   /** Pressures of the load curve (Pa); none if left out. */
   readonly loadCurve?: readonly number[];
+  /** The slurry under the face; fresh grit everywhere if left out. */
+  readonly slurry?: SlurryFace;
+}
+
+/** What the balance of the slurry under the face needs beside the conditions. */
+export interface SlurryFace {
+  readonly shape: FaceShape;
+  readonly carrier: Carrier;
+  readonly constants: SlurryConstants;
 }
 
 /** The rate at one pressure of the load curve. */
@@ -46,10 +59,16 @@ export interface FloorRate {
 }
 
 /**
- * The mean-field answer. SI. Fresh grit everywhere and all the time: no crushing, debris or starvation, so the rate does
- * not fall with depth, rises with load without a best load, and no stall margin is defined.
+ * The mean-field answer. SI. Without a slurry face, grit is fresh everywhere: the rate does not fall with depth, rises with
+ * load without a best load, and no stall is defined.
  */
 export interface Estimate extends FloorRate {
+  /** Rate of sinking at the entry face and at depth (m/s). */
+  readonly rateStart: number;
+  readonly rateEnd: number;
+  /** Pressure at which the exchange breaks down at depth (Pa), and what is left of it: 1 - pressure / stall. Null where fresh. */
+  readonly stallPressure: number | null;
+  readonly stallMargin: number | null;
   /** The grits bear the pressure; false: the state is that of the largest pressure they bear. */
   readonly carried: boolean;
   /** Tool face over the mean floor at closest approach, and averaged over the cycle (m). */
@@ -198,6 +217,55 @@ function checkSetting(setting: EstimateSetting): void {
   }
 }
 
+/** How a cut goes on average: the floor it keeps, the grit that makes it, and the way down. */
+interface Cutting {
+  readonly sums: GapSums;
+  readonly floor: FloorState;
+  readonly rate: FloorRate;
+  readonly rateStart: number;
+  readonly rateEnd: number;
+  readonly time: number;
+  readonly toolWearLength: number;
+  readonly stallPressure: number | null;
+}
+
+/** Fresh grit everywhere: one floor all the way down. */
+function cutFresh(setting: EstimateSetting, tables: EstimateTables): Cutting {
+  const { conditions, depth } = setting;
+  const { sums } = tables;
+  const floor = steadyFloor(sums, setting.pressure);
+  const rate = rateOf(tables, floor);
+  const toolDents = overFloor(sums, TERM.toolDent, floor.gap, floor.roughness);
+  const wearRate = faceWearRate(conditions.frequency * floor.grits, toolDents, conditions.constants);
+  const time = depth / rate.rate;
+  return {
+    sums,
+    floor,
+    rate,
+    rateStart: rate.rate,
+    rateEnd: rate.rate,
+    time,
+    toolWearLength: rate.rate > 0 ? wearRate * time : 0,
+    stallPressure: null,
+  };
+}
+
+/** Slurry balanced at every depth; the shares of dents and thrown grits are those half way down. */
+function cutWithSlurry(setting: EstimateSetting, tables: EstimateTables, slurry: SlurryFace): Cutting {
+  const way = throughDepth({ ...slurry, ...setting }, tables.sums);
+  const shares = rateOf({ ...tables, sums: way.sums }, way.floor);
+  return {
+    sums: way.sums,
+    floor: { ...way.floor, carried: way.carried },
+    rate: { ...shares, rate: setting.depth / way.time },
+    rateStart: way.rateStart,
+    rateEnd: way.rateEnd,
+    time: way.time,
+    toolWearLength: way.toolWearLength,
+    stallPressure: way.stallPressure,
+  };
+}
+
 /**
  * The mean-field estimate of one setting.
  * @param tables from `estimateTables` of the same conditions, to save their work
@@ -208,20 +276,19 @@ export function estimate(
   tables: EstimateTables = estimateTables(setting.conditions),
 ): Estimate {
   checkSetting(setting);
-  const { conditions, depth } = setting;
-  const { sums } = tables;
-  const floor = steadyFloor(sums, setting.pressure);
-  const rate = rateOf(tables, floor);
-  const time = depth / rate.rate;
+  const { conditions, depth, slurry } = setting;
+  const cutting = slurry ? cutWithSlurry(setting, tables, slurry) : cutFresh(setting, tables);
+  const { sums, floor, rate, time, toolWearLength } = cutting;
   const { gap, roughness, grits } = floor;
   const share = engagedShare(sums, gap, roughness);
   const chips = overFloor(sums, TERM.chips, gap, roughness);
   const [load99 = 0, load999 = 0] = loadQuantiles(sums, floor, [0.99, 0.999]);
-  const toolDents = overFloor(sums, TERM.toolDent, gap, roughness);
-  const wearRate = faceWearRate(conditions.frequency * grits, toolDents, conditions.constants);
-  const toolWearLength = rate.rate > 0 ? wearRate * time : 0;
   return {
     ...rate,
+    rateStart: cutting.rateStart,
+    rateEnd: cutting.rateEnd,
+    stallPressure: cutting.stallPressure,
+    stallMargin: cutting.stallPressure === null ? null : 1 - setting.pressure / cutting.stallPressure,
     carried: floor.carried,
     gap,
     meanGap: gap + conditions.amplitude,

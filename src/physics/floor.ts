@@ -41,14 +41,26 @@ export function overFloor(sums: GapSums, term: Term, gap: number, roughness: num
   return sum / WEIGHT_SUM;
 }
 
-/** Share of the film's fresh grits that touch both faces in one cycle. */
+/**
+ * Share of the film's grits that touch both faces in one cycle: of fresh grit by its law, of any other population by its
+ * classes, counted against the fresh grits that came in.
+ */
 export function engagedShare(sums: GapSums, gap: number, roughness: number): number {
-  const { grit } = sums.rows.conditions;
+  const { conditions, classes } = sums.rows;
+  const fresh = sums.population === classes.fraction;
   let sum = 0;
   for (let j = 0; j < FLOOR_NODES; j++) {
-    sum += (NODE_WEIGHT[j] as number) * numberTail(grit, gap - roughness * (NODE_HEIGHT[j] as number));
+    const here = gap - roughness * (NODE_HEIGHT[j] as number);
+    sum += (NODE_WEIGHT[j] as number) * (fresh ? numberTail(conditions.grit, here) : countAbove(sums, here));
   }
   return sum / WEIGHT_SUM;
+}
+
+function countAbove({ rows, population }: GapSums, gap: number): number {
+  let count = 0;
+  for (let i = 0; i < population.length && (rows.classes.diameter[i] as number) > gap; i++)
+    count += population[i] as number;
+  return count;
 }
 
 /** Cycle-mean pressure the grits carry at a gap (Pa). */
@@ -154,6 +166,22 @@ export function chipStateAt(sums: GapSums, gap: number, guess: number): { roughn
   return { roughness, overlap: overlapOf(sums, depths.chip, loadHeight) };
 }
 
+/** The floor under a tool at a known gap and roughness. */
+export function floorAt(sums: GapSums, gap: number, roughness: number): FloorState {
+  const loadHeight = loadHeightAt(sums, gap, roughness);
+  const depths = depthsAt(sums, gap, roughness);
+  return {
+    carried: true,
+    gap,
+    roughness,
+    loadHeight,
+    chipDepth: depths.chip,
+    craterDepth: depths.crater,
+    overlap: overlapOf(sums, depths.chip, loadHeight),
+    grits: gritsPerArea(sums.rows.conditions, gap),
+  };
+}
+
 /**
  * Steady floor under a face pressure: the tool height carries the pressure on a Gaussian floor whose own roughness is
  * Sq = factor sqrt(b l), b the crater depth and l the load height there. Fixed point by secants. The overlap and
@@ -204,18 +232,7 @@ function chokedFloor(sums: GapSums, roughness: number): FloorState {
     most = carried;
     gap = candidate;
   }
-  const loadHeight = loadHeightAt(sums, gap, roughness);
-  const depths = depthsAt(sums, gap, roughness);
-  return {
-    carried: false,
-    gap,
-    roughness,
-    loadHeight,
-    chipDepth: depths.chip,
-    craterDepth: depths.crater,
-    overlap: overlapOf(sums, depths.chip, loadHeight),
-    grits: gritsPerArea(conditions, gap),
-  };
+  return { ...floorAt(sums, gap, roughness), carried: false };
 }
 
 /** Loads that given shares of the hits stay below (N), over the size law and the Gaussian floor. */

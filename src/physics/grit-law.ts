@@ -104,7 +104,8 @@ export interface SizeClasses {
 /**
  * The law in classes equally spaced in ln d (`CLASS_STEP`), from the largest grain down to
  * max(0.4 um, min(d50n e^(-3.2 s), largest / 12)). Only the few largest grains ever touch both faces, so the classes
- * resolve the tail. Grains below the last class are left out and the shares renormalised.
+ * resolve the tail. Grains below the last class are left out, and missing
+ * from the sum of the shares: what lies above any edge is the law's own.
  */
 export function sizeClasses(law: GritLaw): SizeClasses {
   const bottom = Math.max(
@@ -116,13 +117,11 @@ export function sizeClasses(law: GritLaw): SizeClasses {
   const fraction = new Float64Array(count);
   const zLargest = standardised(law, law.largest);
   const zStep = CLASS_STEP / law.spread;
-  let sum = 0;
   for (let i = 0; i < count; i++) {
     diameter[i] = law.largest * exp(-(i + 0.5) * CLASS_STEP);
     const share = normalBetween(zLargest - (i + 1) * zStep, zLargest - i * zStep);
     fraction[i] = share;
-    sum += share;
   }
-  for (let i = 0; i < count; i++) fraction[i] = (fraction[i] as number) / sum;
+  for (let i = 0; i < count; i++) fraction[i] = (fraction[i] as number) / law.kept;
   return { diameter, fraction };
 }

@@ -15,12 +15,12 @@ export interface Row {
 /** The figures of the section with the limits they are held against. */
 export function figureRows(drawing: SectionDrawing): Row[] {
   const { limits = {}, chip, tool } = drawing;
-  const sides = `${inDegrees(drawing.taperLeft)}\u00b0 left, ${inDegrees(drawing.taperRight)}\u00b0 right`;
+  const taper = Number.isFinite(drawing.taper) ? `${inDegrees(drawing.taper)}\u00b0` : 'too shallow to measure';
   return [
     { name: 'Entry size', value: `${inMm(drawing.entrySize)} mm`, limit: limits.entry },
     { name: 'Floor size', value: `${inMm(drawing.floorSize)} mm`, limit: limits.floor },
     { name: 'Depth', value: `${inMm(drawing.depth)} mm`, limit: limits.depth },
-    { name: 'Taper, per side', value: sides, limit: limits.taper },
+    { name: 'Taper, per side', value: taper, limit: limits.taper },
     { name: 'Corner radius', value: `${inMm(drawing.cornerRadius)} mm`, limit: limits.corner },
     {
       name: 'Largest chip',

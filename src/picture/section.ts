@@ -40,9 +40,8 @@ export interface SectionDrawing {
   readonly depth: number;
   readonly entrySize: number;
   readonly floorSize: number;
-  /** Per side, positive where the cavity narrows downwards. */
-  readonly taperLeft: number;
-  readonly taperRight: number;
+  /** Per side, positive where the cavity narrows downwards; NaN where it is too shallow to have one. */
+  readonly taper: number;
   readonly cornerRadius: number;
   /** Largest chip of the rim: width on the entry face, depth down the wall, and on which side of the cut it is drawn. */
   readonly chip?: { readonly width: number; readonly depth: number; readonly side: 'left' | 'right' };
@@ -195,22 +194,19 @@ function drawDimensions(work: Work): void {
   });
 }
 
-function meanTaper(drawing: SectionDrawing): number {
-  return (drawing.taperLeft + drawing.taperRight) / 2;
-}
-
 function drawCallouts(work: Work): void {
   const { sheet, frame, drawing } = work;
   const right = xAt(work, drawing.centre + drawing.entrySize / 2);
   const tall = frame.floor - frame.face;
-  const taper = `taper ${inDegrees(meanTaper(drawing))}\u00b0 per side`;
+  const slope = Number.isFinite(drawing.taper) ? drawing.taper : 0;
+  const taper = `taper ${inDegrees(slope)}\u00b0 per side`;
   const wall = {
-    x: right - (Math.tan(meanTaper(drawing)) * 0.35 * tall) / frame.exaggeration,
+    x: right - (Math.tan(slope) * 0.35 * tall) / frame.exaggeration,
     y: frame.face + 0.35 * tall,
     gap: 0,
   };
   const outwards = [-8, 4, 16, -16, 30].flatMap((dy) => [18, 30].map((dx) => ({ dx, dy })));
-  askLabel(sheet, taper, asides(sheet, wall, { text: taper, style: {} }, outwards));
+  if (Number.isFinite(drawing.taper)) askLabel(sheet, taper, asides(sheet, wall, { text: taper, style: {} }, outwards));
   const { chip, tool } = drawing;
   if (chip !== undefined) {
     const side = chip.side === 'left' ? -1 : 1;

@@ -1,5 +1,5 @@
 import type { HeightField, PlaneCurve } from '#src/base/field.ts';
-import { nearest, nominalSizes, type OutlineSpec } from '#src/base/outline.ts';
+import { nearest, nominalSizes, type OutlineSpec, pointAt } from '#src/base/outline.ts';
 import { type ChipFigures, edgeChips } from '#src/metrology/chips.ts';
 import { cornerRadius } from '#src/metrology/corner.ts';
 import { floorFlatness, insideOutline } from '#src/metrology/floor.ts';
@@ -7,6 +7,7 @@ import { sizesAtDepth } from '#src/metrology/size.ts';
 import { entrySizeDepth, floorSizeDepth, sizeSigns, tapers } from '#src/metrology/taper.ts';
 import type { BrickField } from '#src/voxel/bricks.ts';
 import { type Cut, damageQuantile, hitSummary, largestDamage } from '#src/voxel/cut.ts';
+import { OUT_OF_REACH } from '#src/voxel/kernels/contract.ts';
 import { removedVolume } from '#src/voxel/solid.ts';
 import { SCALAR } from '#src/voxel/state.ts';
 import { rimProfile, type SectionCurves, sectionAt, surfaceField, wallPoints } from '#src/voxel/surface.ts';
@@ -17,8 +18,8 @@ const TAPER_LEVELS = 25;
 const FLOOR_PEAKS = 4;
 /** Standard error of the corner's least-squares arc, over its radius, past which the touching fillet is taken. */
 const ARC_ERROR = 0.15;
-/** Depth, in edge radius plus largest grain, below which the fillet leaves too little wall for a taper. */
-const TAPER_NEEDS = 4;
+/** Share of the depth that must lie above the fillet for a taper to be measured. */
+const TAPER_NEEDS = 0.5;
 /** Share of the depth over which the first and the last rate are averaged. */
 const RATE_SPAN = 0.1;
 
@@ -40,7 +41,7 @@ export interface CutMeasures {
   readonly taper: number;
   readonly cornerRadius: number;
   readonly floorFlatness: number;
-  /** Width left out beside the wall for the flatness (m). */
+  /** Width left out inside the tool's outline for the flatness (m); the wall lies an overcut further out. */
   readonly flatnessMargin: number;
   /** Edge chips: width on the entry face and depth down the wall. */
   readonly chipWidth: ChipFigures;
@@ -126,9 +127,34 @@ function rateBetween(cut: Cut, from: number, to: number): number {
   return last.time > first.time ? (last.depth - first.depth) / (last.time - first.time) : 0;
 }
 
-/** Least-squares sizes at one depth, from the wall between the chips. */
+/** Least-squares sizes at one depth: the wall between the chips, and the wall as it was where a chip has taken it. */
 function sizesAt(cut: Cut, bricks: BrickField, cavity: OutlineSpec, z: number): number[] {
-  return sizesAtDepth(unchippedWall(cut, bricks, z), cavity);
+  const seen = unchippedWall(cut, bricks, z);
+  const taken = wallUnderChips(cut, bricks, z);
+  const join = (a: Float64Array, b: Float64Array) => Float64Array.of(...a, ...b);
+  return sizesAtDepth({ x: join(seen.x, taken.x), y: join(seen.y, taken.y) }, cavity);
+}
+
+/** Points of the wall field at depth z where an edge chip reaches that deep. */
+function wallUnderChips(cut: Cut, bricks: BrickField, z: number): { x: Float64Array; y: Float64Array } {
+  const { model, state } = cut;
+  const x: number[] = [];
+  const y: number[] = [];
+  state.walls.forEach(({ field, rim }, k) => {
+    const row = Math.floor(z / field.dy);
+    const start = model.outline.loops[k]?.start ?? 0;
+    if (row >= field.ny) return;
+    for (let i = 0; i < field.nx; i++) {
+      const h = field.heights[row * field.nx + i] as number;
+      const s = (i + 0.5) * field.dx;
+      const cell = Math.min(rim.n - 1, Math.floor(s / rim.spacing));
+      if (h <= OUT_OF_REACH || !((rim.chips[cell] as number) > Math.max(0, z - bricks.pitch))) continue;
+      const p = pointAt(model.outline, start + s);
+      x.push(p.x - h * p.nx);
+      y.push(p.y - h * p.ny);
+    }
+  });
+  return { x: Float64Array.from(x), y: Float64Array.from(y) };
 }
 
 /** Wall points at depth z that lie near the outline and not in an edge chip. */
@@ -164,11 +190,14 @@ function mean(values: readonly number[]): number {
   return finite.length > 0 ? finite.reduce((sum, v) => sum + v, 0) / finite.length : Number.NaN;
 }
 
-/** NaN in a cavity so shallow that the fillet takes most of its wall. */
+/** Levels inside the fillet (edge radius and largest grain above the floor) are left out; NaN where it takes half the wall. */
 function meanTaper(cut: Cut, bricks: BrickField, cavity: OutlineSpec, depth: number): number {
   const { edgeRadius, conditions } = cut.model.spec;
-  if (depth < TAPER_NEEDS * (edgeRadius + conditions.grit.largest)) return Number.NaN;
-  const depths = Float64Array.from({ length: TAPER_LEVELS }, (_, k) => (0.1 + (0.8 * k) / (TAPER_LEVELS - 1)) * depth);
+  const above = depth - edgeRadius - conditions.grit.largest;
+  const to = Math.min(0.9 * depth, above);
+  if (to < TAPER_NEEDS * depth) return Number.NaN;
+  const from = 0.1 * depth;
+  const depths = Float64Array.from({ length: TAPER_LEVELS }, (_, k) => from + ((to - from) * k) / (TAPER_LEVELS - 1));
   const bySize = nominalSizes(cavity).map(() => new Float64Array(TAPER_LEVELS));
   depths.forEach((z, k) => {
     sizesAt(cut, bricks, cavity, z).forEach((size, n) => {

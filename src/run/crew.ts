@@ -26,8 +26,10 @@ export interface CrewSetup {
     readonly field: SharedArrayBuffer;
     readonly step: SharedArrayBuffer;
     readonly rim: SharedArrayBuffer | null;
+    /** Copied, but for the parts the slurry renews, which lie in shared memory. */
+    readonly tables: readonly KernelTables[];
+    readonly tileZones: Uint8Array | null;
   }[];
-  readonly tables: KernelTables;
 }
 
 /** True where threads can share memory. */
@@ -44,8 +46,8 @@ interface Schedule {
   readonly after: Int32Array;
 }
 
-function scheduleOf(pieces: readonly Workpiece[], tables: KernelTables): Schedule {
-  const work = tileWork(pieces, tables);
+function scheduleOf(pieces: readonly Workpiece[]): Schedule {
+  const work = tileWork(pieces);
   const total = work.colours.reduce((sum, colour) => sum + colour.length, 0);
   const tasks = new Int32Array(total);
   const after = new Int32Array(total);
@@ -88,12 +90,14 @@ function takeTasks(words: Int32Array, schedule: Schedule, hit: (task: number) =>
 export function helpCut(setup: CrewSetup): void {
   const words = new Int32Array(setup.words);
   const kernel = createFastKernel();
-  const pieces = setup.pieces.map(({ field, step, rim }) => ({
+  const pieces = setup.pieces.map(({ field, step, rim, tables, tileZones }) => ({
+    tables,
+    tileZones,
     field: fieldFrom(field),
     step: new Float64Array(step, 0, STEPS),
     rim: rim && rimFrom(rim),
   }));
-  const schedule = scheduleOf(pieces, setup.tables);
+  const schedule = scheduleOf(pieces);
   while (Atomics.load(words, WORD.stop) === 0) {
     const seen = takeTasks(words, schedule, (task) => runTask(kernel, schedule.work, task));
     if (Atomics.load(words, WORD.stop) === 0) waitChange(words, WORD.ticket, seen);
@@ -116,9 +120,8 @@ export interface Crew extends TileRunner {
  * @throws RangeError when a step has more tiles than can be numbered
  */
 export function startCrew({ model, state }: Cut, helpers: readonly Port[]): Crew {
-  const pieces = piecesOf(state);
-  const { kernel: tables } = model.tables;
-  const schedule = scheduleOf(pieces, tables);
+  const pieces = piecesOf(model, state);
+  const schedule = scheduleOf(pieces);
   const total = schedule.tasks.length;
   if (total >= TASK_MASK) throw new RangeError(`${total} tiles are more than a crew can number`);
   const words = new Int32Array(allocateShared(WORDS * 4));
@@ -127,12 +130,13 @@ export function startCrew({ model, state }: Cut, helpers: readonly Port[]): Crew
   const setup: CrewSetup = {
     kind: 'crew',
     words: words.buffer as SharedArrayBuffer,
-    pieces: pieces.map(({ field, step, rim }) => ({
+    pieces: pieces.map(({ field, step, rim, tables, tileZones }) => ({
+      tables,
+      tileZones,
       field: field.heights.buffer as SharedArrayBuffer,
       step: step.buffer as SharedArrayBuffer,
       rim: rim && (rim.chips.buffer as SharedArrayBuffer),
     })),
-    tables,
   };
   for (const helper of helpers) helper.post(setup);
   const kernel = createFastKernel();

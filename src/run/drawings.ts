@@ -98,7 +98,7 @@ function limitTexts(limits: Limits, nominal: number): SectionLimits {
 
 /** Whether the cavity has the sizes that drawings are dimensioned with: one all in chips has none. */
 export function isMeasured({ measures }: Drawable): boolean {
-  return [measures.entrySize[0], measures.floorSize[0], measures.taper].every(Number.isFinite);
+  return [measures.entrySize[0], measures.floorSize[0]].every(Number.isFinite);
 }
 
 /** The annotated half-section as SVG; null where the cut is too shallow to have walls that can be measured. */
@@ -120,8 +120,7 @@ export function sectionSvg(drawable: Drawable, curve: CutCurve | undefined): Uin
     depth: measures.depth,
     entrySize: measures.entrySize[0] as number,
     floorSize: measures.floorSize[0] as number,
-    taperLeft: measures.taper,
-    taperRight: measures.taper,
+    taper: measures.taper,
     cornerRadius: measures.cornerRadius,
     ...(largest > 0 && {
       chip: { width: largest, depth: measures.chipDepth.largest, side: chipAt.x < centre ? 'left' : 'right' },

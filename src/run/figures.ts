@@ -36,7 +36,7 @@ export function cutFigures(measures: CutMeasures, texture: FloorTexture | null):
   const noChip = 'not known: no chip was found on the rim';
   const noTrace = 'not known: there is no trace';
   const stated = texture ? [NO_BAND, ...texture.departures].join('; ') : noTrace;
-  const margin = `${NO_BAND}; ${Math.round(um(m.flatnessMargin))} um beside the wall are left out`;
+  const margin = `${NO_BAND}; ${Math.round(um(m.flatnessMargin))} um inside the tool's outline are left out`;
   return {
     timeMin: figure(m.time / SECONDS_PER_MINUTE, NOTHING_REMOVED),
     depthMm: figure(mm(m.depth), NOTHING_REMOVED),

@@ -3,18 +3,23 @@ import { balance, countHeights, type HeightCounts, sumOver } from './balance.ts'
 import { type Field, LOAD_BINS, STEP, SUM, SUMS } from './kernels/contract.ts';
 import { ADVANCE, type CutModel, RENEW_EVERY, WALL_EVERY } from './model.ts';
 import type { TileRunner } from './runner.ts';
+import { renewSlurry } from './slurry.ts';
 import { type CutState, SCALAR } from './state.ts';
-import { openRows } from './wall.ts';
+import { openRows, passedHeight } from './wall.ts';
 
 /** Floor columns looked at when the load is balanced. */
 const SAMPLED_COLUMNS = 40000;
 /** Cycles of each of the first steps, while the rate is not known yet. */
 const FIRST_STEPS = 20;
 const FIRST_CYCLES = 50;
+/** Most a step may outlast the one before. */
+const GROWTH = 2;
 /** Weight of a new step in the smoothed rate. */
 const SMOOTHING = 0.05;
-/** Steps between balances: the face follows the floor in between, and drifts off load where edges carry much of it. */
-const BALANCE_EVERY = 2;
+/** Share of the set load below which the grains are said not to carry it. */
+const LEAST_BORNE = 0.98;
+/** Times the slurry is worked out on the way down. */
+const SLURRY_RENEWALS = 10;
 
 /** Raised when a step leaves the state impossible: names the quantity, the place and the step. */
 export class StateError extends Error {
@@ -29,8 +34,9 @@ export function isDone(model: CutModel, state: CutState): boolean {
 /** One step of the cut: balance the load, set the step, hit every tile, book what happened, check the state. */
 export function advance(model: CutModel, state: CutState, runner: TileRunner): void {
   const s = state.scalars;
-  const step = s[SCALAR.step] as number;
-  if (step % BALANCE_EVERY === 0) balanceAll(model, state);
+  if (model.slurry && -(s[SCALAR.floorMean] as number) >= (s[SCALAR.nextSlurryDepth] as number))
+    renewZones(model, state);
+  balanceAll(model, state);
   const cycles = cyclesOf(model, state);
   setSteps(model, state, cycles);
   runner.run();
@@ -38,14 +44,30 @@ export function advance(model: CutModel, state: CutState, runner: TileRunner): v
   check(model, state);
 }
 
-/** The next prime at or above n: a stride that shares no factor with a row. */
+/** Works the slurry out afresh at the depth reached; the next time after a tenth of the depth asked for. */
+function renewZones(model: CutModel, state: CutState): void {
+  const s = state.scalars;
+  if (!model.slurry || !state.zones) return;
+  const { drive } = model.spec;
+  const depth = -(s[SCALAR.floorMean] as number);
+  const load = drive.kind === 'load' ? drive.load : (s[SCALAR.setLoad] as number);
+  const pressure = load / model.outline.area;
+  const came = renewSlurry(model.slurry, model.tables, { zones: state.zones, means: state.means }, { depth, pressure });
+  s[SCALAR.nextSlurryDepth] = depth + model.spec.depth / SLURRY_RENEWALS;
+  s[SCALAR.stall] = came.stall === Number.POSITIVE_INFINITY ? 0 : came.stall;
+  s[SCALAR.freshShare] = came.fresh;
+  if (!came.carried) s[SCALAR.stalled] = 1;
+}
+
+/** A stride over the columns, an odd prime, so that it shares no factor with a tile. */
 function strideFor(columns: number): number {
   let n = Math.max(1, Math.floor(columns / SAMPLED_COLUMNS));
   const prime = (m: number) => {
     for (let k = 2; k * k <= m; k++) if (m % k === 0) return false;
     return true;
   };
-  while (n > 1 && !prime(n)) n++;
+  // an odd stride: rows are whole tiles, and tiles even
+  while (n > 1 && (n === 2 || !prime(n))) n++;
   return n;
 }
 
@@ -57,9 +79,9 @@ function balanceAll(model: CutModel, state: CutState): void {
   if (!state.strip) return;
   const pressure = s[SCALAR.facePressure] as number;
   if (!(pressure > 0)) return;
-  const counted = count(model, state.strip, state.stripCounts, s[SCALAR.stripFace] as number);
+  const counted = count(model, state, state.strip, state.stripCounts, s[SCALAR.stripFace] as number);
   const area = state.strip.dx * state.strip.dy * counted.faceColumns * counted.weight;
-  const solved = balance(counted, model.means, {
+  const solved = balance(counted, state.means, {
     target: pressure,
     factor: (face) => loadFactor(model, state.strip as Field, face - counted.faceMean) / area,
     start: s[SCALAR.stripFace] as number,
@@ -70,9 +92,17 @@ function balanceAll(model: CutModel, state: CutState): void {
   s[SCALAR.stripMean] = counted.faceMean;
 }
 
-function count(model: CutModel, field: Field, counts: HeightCounts, face: number): HeightCounts {
+function count(model: CutModel, state: CutState, field: Field, counts: HeightCounts, face: number): HeightCounts {
+  const tileZones = field === state.floor ? model.slurry?.tileZones : stripZones(model, state);
   const stride = strideFor(field.nx * field.ny);
-  return countHeights(counts, field, model.tables.kernel, model.means, { face, stride });
+  return countHeights(counts, field, model.tables.kernel, state.means, { face, stride, tileZones });
+}
+
+/** The strip's tiles all lie in the middle zone of the face. */
+function stripZones(model: CutModel, state: CutState): Uint8Array | undefined {
+  if (!model.slurry || !state.strip) return undefined;
+  const { tilesX, tilesY } = state.strip;
+  return new Uint8Array(tilesX * tilesY).fill(state.means.flat >> 1);
 }
 
 /** Load (N) per summed impulse over sampled columns, at this mean gap. */
@@ -83,8 +113,8 @@ function loadFactor(model: CutModel, field: Field, gap: number): number {
 
 function balanceFloor(model: CutModel, state: CutState, target: number): void {
   const s = state.scalars;
-  const counted = count(model, state.floor, state.counts, s[SCALAR.face] as number);
-  const solved = balance(counted, model.means, {
+  const counted = count(model, state, state.floor, state.counts, s[SCALAR.face] as number);
+  const solved = balance(counted, state.means, {
     target,
     factor: (face) => loadFactor(model, state.floor, face - counted.faceMean),
     start: s[SCALAR.face] as number,
@@ -99,18 +129,23 @@ function balanceFloor(model: CutModel, state: CutState, target: number): void {
 function readFloor(model: CutModel, state: CutState): void {
   const s = state.scalars;
   const face = s[SCALAR.face] as number;
-  const counted = count(model, state.floor, state.counts, face);
+  const counted = count(model, state, state.floor, state.counts, face);
   bookFace(model, state, counted, face);
 }
 
 function bookFace(model: CutModel, state: CutState, counted: HeightCounts, face: number): void {
   const s = state.scalars;
   const factor = loadFactor(model, state.floor, face - counted.faceMean);
-  const load = sumOver(counted, model.means, model.means.impulse, face);
+  const load = sumOver(counted, state.means, state.means.impulse, face);
   s[SCALAR.floorMean] = counted.faceMean;
-  s[SCALAR.toolDents] = sumOver(counted, model.means, model.means.toolDent, face).all;
-  s[SCALAR.setLoad] = load.all * factor;
-  s[SCALAR.facePressure] = (load.flat * factor) / state.faceArea;
+  s[SCALAR.toolDents] = sumOver(counted, state.means, state.means.toolDent, face).all;
+  const { drive } = model.spec;
+  s[SCALAR.setLoad] = drive.kind === 'load' ? drive.load : load.all * factor;
+  const sampled = counted.faceColumns * counted.weight * state.floor.dx * state.floor.dy;
+  s[SCALAR.facePressure] = (load.flat * factor) / sampled;
+  if (drive.kind === 'load' && load.all * factor < LEAST_BORNE * drive.load) {
+    throw new RangeError('the grains cannot carry this load: enter less, or more or coarser grit');
+  }
 }
 
 /** Cycles of the next step: an advance of a fifth of the load's e-fold height, never past the depth asked for. */
@@ -119,7 +154,8 @@ function cyclesOf(model: CutModel, state: CutState): number {
   const rate = s[SCALAR.ratePerCycle] as number;
   if (!(rate > 0)) return 1;
   const left = model.spec.depth + (s[SCALAR.floorMean] as number);
-  const cycles = Math.max(1, Math.min((ADVANCE * (s[SCALAR.efold] as number)) / rate, left / rate));
+  const wanted = Math.max(1, Math.min((ADVANCE * (s[SCALAR.efold] as number)) / rate, left / rate));
+  const cycles = Math.min(wanted, GROWTH * (s[SCALAR.lastCycles] as number));
   return (s[SCALAR.step] as number) < FIRST_STEPS ? Math.min(FIRST_CYCLES, cycles) : cycles;
 }
 
@@ -200,7 +236,7 @@ function setWalls(
       ((perVolume * field.dx * field.dy * field.block * field.block) / m) * (s[SCALAR.cyclesSinceWall] as number);
     row[STEP.magnification] = m;
     row[STEP.key1] = model.keys.walls[k] as number;
-    row[STEP.rows] = Math.min(field.ny, Math.floor(-(s[SCALAR.face] as number) / field.dy));
+    row[STEP.rows] = Math.min(field.ny, Math.floor(-passedHeight(model, state) / field.dy));
   });
   if (active) s[SCALAR.cyclesSinceWall] = 0;
 }
@@ -240,9 +276,12 @@ function book(model: CutModel, state: CutState, cycles: number): void {
   const even = state.floorStep[STEP.even] as number;
   const lowered = at(SUM.faceRemoved) / state.faceArea + even;
   const step = s[SCALAR.step] as number;
-  const rate = lowered / cycles;
-  const weight = step < FIRST_STEPS ? 1 / (step + 1) : SMOOTHING;
-  s[SCALAR.ratePerCycle] = (s[SCALAR.ratePerCycle] as number) * (1 - weight) + rate * weight;
+  // sums and not ratios are smoothed, so that a step without a hit does not stretch the next
+  const keep = step < FIRST_STEPS ? 1 : 1 - SMOOTHING;
+  s[SCALAR.smoothLowered] = keep * (s[SCALAR.smoothLowered] as number) + lowered;
+  s[SCALAR.smoothCycles] = keep * (s[SCALAR.smoothCycles] as number) + cycles;
+  s[SCALAR.ratePerCycle] = (s[SCALAR.smoothLowered] as number) / (s[SCALAR.smoothCycles] as number);
+  s[SCALAR.lastCycles] = cycles;
   add(SCALAR.floorMean, -lowered);
   if (drive.kind === 'load') add(SCALAR.face, -lowered);
   else add(SCALAR.face, (-drive.feed * cycles) / conditions.frequency);
@@ -307,7 +346,7 @@ function bookTool(model: CutModel, state: CutState, cycles: number, add: (k: num
   add(SCALAR.toolLost, volume / model.outline.area);
 }
 
-/** Finite, in range, monotone: what must hold after every step. */
+/** Finite and in range: what is cheap to hold after every step. Conservation and monotony are held by tests. */
 function check(model: CutModel, state: CutState): void {
   const s = state.scalars;
   const step = s[SCALAR.step] as number;

@@ -44,15 +44,16 @@ export function countHeights(
   field: Field,
   tables: KernelTables,
   means: GapMeans,
-  at: { face: number; stride: number },
+  at: { face: number; stride: number; tileZones?: Uint8Array },
 ): HeightCounts {
   const { heights, edges } = field;
   const { counts, bins, first, last } = out;
-  const { face, stride } = at;
+  const { face, stride, tileZones } = at;
   const zones = means.zones.length;
   const reach =
     (tables.coefficients[COEFFICIENT.largest] as number) / 2 + (tables.coefficients[COEFFICIENT.edgeRadius] as number);
-  const zonesPerMetre = (zones - 1) / reach;
+  const { flat } = means;
+  const zonesPerMetre = (zones - flat) / reach;
   counts.fill(0);
   first.fill(bins);
   last.fill(0);
@@ -64,15 +65,18 @@ export function countHeights(
   const edged = edges.length > 0;
   for (let c = 0; c < heights.length; c += stride) {
     const h = heights[c] as number;
-    if (h >= face || h <= OUT_OF_REACH) continue;
+    if (h <= OUT_OF_REACH) continue;
     const e = edged ? (edges[c] as number) : 0;
-    if (e >= reach) continue;
-    const zone = e > 0 ? 1 + Math.min(zones - 2, Math.floor(e * zonesPerMetre)) : 0;
-    if (zone === 0) {
+    const lift = e > 0 ? means.lift : 0;
+    if (e >= reach || h >= face + lift) continue;
+    let zone = 0;
+    if (e > 0) zone = flat + Math.min(zones - flat - 1, Math.floor(e * zonesPerMetre));
+    else if (tileZones) zone = tileZones[tileOf(field, c)] as number;
+    if (e <= 0) {
       out.faceColumns++;
       sum += h;
     }
-    const bin = Math.min(bins - 1, Math.floor((face - h) * perStep));
+    const bin = Math.min(bins - 1, Math.floor((face - h + lift) * perStep));
     const k = zone * bins + bin;
     counts[k] = (counts[k] as number) + 1;
     if (bin < (first[zone] as number)) first[zone] = bin;
@@ -80,6 +84,11 @@ export function countHeights(
   }
   out.faceMean = out.faceColumns > 0 ? sum / out.faceColumns : 0;
   return out;
+}
+
+/** Tile of a column. */
+function tileOf({ nx, tile, tilesX }: Field, column: number): number {
+  return Math.floor(column / nx / tile) * tilesX + Math.floor((column % nx) / tile);
 }
 
 /** Sum over the counted columns of a mean per grain, with the face moved to `face`; the flat face's part beside it. */
@@ -108,7 +117,7 @@ export function sumOver(
       sum += count * (low + (x - i) * ((values[row + i + 1] as number) - low));
     }
     all += sum;
-    if (zone === 0) flat = sum;
+    if (zone < means.flat) flat += sum;
   }
   return { all: all * counted.weight, flat: flat * counted.weight };
 }

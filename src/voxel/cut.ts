@@ -6,7 +6,7 @@ import type { Allocate } from './field.ts';
 import { LOAD_BIN_FIRST_EXPONENT, LOAD_BINS, LOAD_BINS_PER_OCTAVE } from './kernels/contract.ts';
 import { type CutModel, type CutSpec, makeModel } from './model.ts';
 import type { TileRunner } from './runner.ts';
-import { type CutState, makeState, SCALAR } from './state.ts';
+import { type CutState, makeState, SCALAR, saveState } from './state.ts';
 
 /** Records of the history per depth asked for. */
 const RECORDS = 240;
@@ -28,6 +28,8 @@ export interface CutRecord {
   readonly largestLoad: number;
   /** Share of the grit under the face that is fresh. */
   readonly freshFraction: number;
+  /** What is left of the load at which the slurry's exchange breaks down: 1 - load / stall load; null where it does not. */
+  readonly stallMargin: number | null;
   /** Length the tool has lost and the radius of its edge (m). */
   readonly toolLost: number;
   readonly toolEdgeRadius: number;
@@ -98,7 +100,8 @@ function recordOf(cut: Cut): CutRecord {
     engaged: cycles > 0 ? at(SCALAR.recentImpacts) / cycles : 0,
     meanLoad: at(SCALAR.recentEngaged) > 0 ? at(SCALAR.recentLoad) / at(SCALAR.recentEngaged) : 0,
     largestLoad: at(SCALAR.recentLargestLoad),
-    freshFraction: 1,
+    freshFraction: at(SCALAR.freshShare),
+    stallMargin: stallMarginOf(cut),
     toolLost: at(SCALAR.toolLost),
     toolEdgeRadius: model.spec.edgeRadius,
     edgeChip: largestChipWidth(cut),
@@ -118,6 +121,18 @@ function recordOf(cut: Cut): CutRecord {
   return record;
 }
 
+/** 1 - load / stall load at the depth reached; null with fresh grit, or where the grits bear all that is asked. */
+export function stallMarginOf({ model, state }: Cut): number | null {
+  const stall = state.scalars[SCALAR.stall] as number;
+  if (!(stall > 0)) return null;
+  return 1 - (state.scalars[SCALAR.setLoad] as number) / model.outline.area / stall;
+}
+
+/** True once the load was more than the slurry's exchange bears: the cut went on starved. */
+export function hasStalled({ state }: Cut): boolean {
+  return state.scalars[SCALAR.stalled] === 1;
+}
+
 /** Widest chip on the entry face (m). */
 export function largestChipWidth(cut: Cut): number {
   let deepest = 0;
@@ -134,7 +149,7 @@ export function loadBinEdges(): Float64Array {
   });
 }
 
-/** Hits of floor and strip by the depth of the crack they left: bin edges (m) and counts. */
+/** Hits of the floor, each for what it stands for, by the depth of the crack they left: bin edges (m) and counts. */
 export function damageCounts(cut: Cut): { edges: Float64Array; counts: Float64Array } {
   const { work, constants } = cut.model.spec.conditions;
   const crater = craterLaw(work, constants);
@@ -180,6 +195,7 @@ export function hitSummary(cut: Cut) {
     impacts: at(SCALAR.impacts),
     drawn: at(SCALAR.engaged),
     candidatesPerHit: at(SCALAR.engaged) > 0 ? at(SCALAR.candidates) / at(SCALAR.engaged) : 0,
+    /** Removed over credited chip volume; above one where chips shear off peaks taller than their bowl. */
     overlap: at(SCALAR.credited) > 0 ? 1 - at(SCALAR.overlap) / at(SCALAR.credited) : 1,
     plasticShare: removed > 0 ? (at(SCALAR.dentRemoved) + at(SCALAR.freeRemoved)) / removed : 0,
     freeShare: removed > 0 ? at(SCALAR.freeRemoved) / removed : 0,
@@ -198,20 +214,13 @@ export function stepsLeft(cut: Cut): number {
   return done > 0 ? Math.ceil((steps * (1 - done)) / done) : Number.POSITIVE_INFINITY;
 }
 
-/** A digest of all fields: the same for any number of workers, chunked or whole. FNV-1a over the bytes, 64 bits in hex. */
+/** A digest of all that changes: the same for any number of workers, chunked or whole. FNV-1a over the bytes, 64 bits in hex. */
 export function cutHash(cut: Cut): string {
-  const { state } = cut;
-  const arrays = [
-    state.floor.heights,
-    state.floor.cracks,
-    ...(state.strip ? [state.strip.heights] : []),
-    ...state.walls.flatMap((wall) => [wall.field.heights, wall.rim.chips]),
-    state.scalars,
-  ];
+  const arrays = saveState(cut.state);
   let low = 0x84222325;
   let high = 0xcbf29ce4;
   for (const array of arrays) {
-    const words = new Uint32Array(array.buffer as ArrayBuffer, array.byteOffset, array.byteLength >> 2);
+    const words = new Uint32Array(array, 0, array.byteLength >> 2);
     for (const word of words) {
       low = Math.imul(low ^ word, 0x01000193);
       high = Math.imul(high ^ word ^ (low >>> 15), 0x01000193);

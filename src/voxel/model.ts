@@ -1,7 +1,9 @@
+import { exp, pow } from '#src/base/math.ts';
 import { makeOutline, type Outline, type OutlineSpec } from '#src/base/outline.ts';
 import { streamKey } from '#src/base/philox.ts';
 import { contact, contactLaw, emptyContact } from '#src/physics/contact.ts';
 import { craterLaw, meanChip } from '#src/physics/crater.ts';
+import type { SlurryFace } from '#src/physics/estimate.ts';
 import { freeImpact } from '#src/physics/free-impact.ts';
 import { sizeClasses } from '#src/physics/grit-law.ts';
 import { gritsPerArea } from '#src/physics/population.ts';
@@ -9,6 +11,7 @@ import type { Conditions } from '#src/physics/records.ts';
 import { hitYield } from '#src/physics/yields.ts';
 import type { FieldSpec } from './field.ts';
 import { COEFFICIENT, HIT_CHANNELS } from './kernels/contract.ts';
+import { makeSlurry, type SlurryModel } from './slurry.ts';
 import { buildTables, type CutTables, type GapMeans, gapMeans } from './tables.ts';
 
 /** The trace strip: long enough for the 4 mm evaluation length with half a cut-off of 0.8 mm at either end. */
@@ -16,6 +19,8 @@ const STRIP_LENGTH = 4.8e-3;
 const STRIP_PITCH = 1e-6;
 /** Zones of distance beyond the start of the tool's curved edge in the load balance, the flat face included. */
 const ZONES = 17;
+/** Of these, zones under the curved edge. */
+export const EDGE_ZONES = ZONES - 1;
 /** Advance per step over the load's e-fold height: the load then stays within 1 % with the face taken at mid-step. */
 export const ADVANCE = 0.2;
 /** Floor steps per wall step. */
@@ -48,6 +53,8 @@ export interface CutSpec {
   readonly magnification?: number;
   /** Without the trace strip. */
   readonly withoutStrip?: boolean;
+  /** The slurry under the face; fresh grit everywhere if left out. */
+  readonly slurry?: SlurryFace;
   readonly precision?: 32 | 64;
 }
 
@@ -66,7 +73,9 @@ export interface CutModel {
   readonly spec: CutSpec;
   readonly outline: Outline;
   readonly tables: CutTables;
+  /** Means of fresh grit. */
   readonly means: GapMeans;
+  readonly slurry: SlurryModel | null;
   readonly floor: FieldSpec;
   /** Centre of floor column (0, 0) in the outline's frame (m). */
   readonly x0: number;
@@ -77,6 +86,9 @@ export interface CutModel {
   /** Mean radius and depth of the chips expected on a flat floor, and the gap there (m). */
   readonly chipRadius: number;
   readonly chipDepth: number;
+  /** Radius of the largest chip of the floor, and depth of the deepest edge chip, that are reckoned with (m). */
+  readonly largestChip: number;
+  readonly deepestEdgeChip: number;
   readonly startGap: number;
   readonly startEfold: number;
   /** Expected lowering by free impacts per cycle (m). */
@@ -99,13 +111,16 @@ export function makeModel(spec: CutSpec): CutModel {
   const start = flatFloor(spec, outline, means);
   const chip = typicalChip(conditions, start.gap);
   const largestChip = largestRadius(tables, 0.85 * start.gap);
-  const grid = floorGrid(spec, outline, chip.radius, largestChip);
-  const walls = wallModels(spec, outline, grid.pitch, chip.radius, largestChip);
+  const deepestEdgeChip = deepestChip(spec, tables);
+  const sizes = { radius: chip.radius, largestChip, deepestEdgeChip };
+  const grid = floorGrid(spec, outline, sizes);
+  const walls = wallModels(spec, outline, grid.pitch, sizes);
   return {
     spec,
     outline,
     tables,
     means,
+    slurry: spec.slurry ? makeSlurry(conditions, spec.slurry, grid) : null,
     floor: grid.field,
     x0: grid.x0,
     y0: grid.y0,
@@ -114,6 +129,8 @@ export function makeModel(spec: CutSpec): CutModel {
     walls,
     chipRadius: chip.radius,
     chipDepth: chip.depth,
+    largestChip,
+    deepestEdgeChip,
     startGap: start.gap,
     startEfold: start.efold,
     freePerCycle: freeLowering(conditions, start.gap),
@@ -182,6 +199,28 @@ function largestRadius(tables: CutTables, gap: number): number {
   return (coefficients[COEFFICIENT.radius] as number) * root * Math.sqrt(Math.sqrt(root));
 }
 
+/** Sizes of chips the fields are laid out for (m). */
+interface ChipSizes {
+  readonly radius: number;
+  readonly largestChip: number;
+  readonly deepestEdgeChip: number;
+}
+
+/** Scatter of the rim's sites reckoned with, in standard deviations. */
+const WEAKEST_SITE = 3;
+
+/** Depth of the edge chip under the largest grain, squeezed as far as the run-out swings, at the weakest site (m). */
+function deepestChip(spec: CutSpec, tables: CutTables): number {
+  const { hits, hitDiameters, hitOverlaps, coefficients } = tables.kernel;
+  const { constants } = spec.conditions;
+  const largest = coefficients[COEFFICIENT.largest] as number;
+  const squeeze = Math.min(largest, 2 * spec.runout * constants.runoutCap);
+  const overlap = Math.min(hitOverlaps - 1, Math.ceil((squeeze / largest) * (hitOverlaps - 1)));
+  const load = hits[((hitDiameters - 1) * hitOverlaps + overlap) * HIT_CHANNELS] as number;
+  const site = exp(-WEAKEST_SITE * constants.chipSiteScatter);
+  return pow(load / ((coefficients[COEFFICIENT.chipLoad] as number) * site), 2 / 3);
+}
+
 /** Blocks no larger than a crater keep the candidates per engaged grain under three. */
 function blockFor(columnsPerRadius: number): number {
   if (columnsPerRadius >= 6) return 8;
@@ -194,11 +233,11 @@ function tileFor(columns: number): number {
   return 256;
 }
 
-function floorGrid(spec: CutSpec, outline: Outline, radius: number, largestChip: number) {
+function floorGrid(spec: CutSpec, outline: Outline, { radius, largestChip, deepestEdgeChip }: ChipSizes) {
   const { bounds } = outline;
   const { grit, constants } = spec.conditions;
   const toolReach = grit.largest / 2 + spec.edgeRadius + Math.min(largestChip, grit.largest);
-  const wallReach = grit.largest + spec.runout * constants.runoutCap + constants.chipWidthRatio * grit.largest;
+  const wallReach = grit.largest + spec.runout * constants.runoutCap + constants.chipWidthRatio * deepestEdgeChip;
   const margin = Math.max(toolReach, wallReach);
   const width = bounds.xMax - bounds.xMin + 2 * margin;
   const height = bounds.yMax - bounds.yMin + 2 * margin;
@@ -206,6 +245,11 @@ function floorGrid(spec: CutSpec, outline: Outline, radius: number, largestChip:
   const pitch = spec.pitch ?? Math.max(radius / spec.columnsPerRadius, budgeted);
   const asked = (spec.columnsPerRadius * pitch) / radius;
   const magnification = spec.magnification ?? (asked > 1.001 ? asked * asked : 1);
+  if (radius * Math.sqrt(magnification) < 0.5 * pitch) {
+    throw new RangeError(
+      `a pitch of ${pitch} m loses craters of ${radius} m: take a finer one, or let it be magnified`,
+    );
+  }
   const stretch = Math.sqrt(magnification);
   const tile = tileFor((largestChip * stretch) / pitch);
   const nx = roundUp(width / pitch, tile);
@@ -249,8 +293,7 @@ function wallModels(
   spec: CutSpec,
   outline: Outline,
   floorPitch: number,
-  radius: number,
-  largestChip: number,
+  { radius, largestChip, deepestEdgeChip }: ChipSizes,
 ): WallModel[] {
   const budget = spec.columnBudget / 2;
   const wanted = Math.min(floorPitch, radius / spec.columnsPerRadius);
@@ -260,7 +303,9 @@ function wallModels(
     const asked = (spec.columnsPerRadius * pitch) / radius;
     const magnification = asked > 1.001 ? asked * asked : 1;
     const stretched = largestChip * Math.sqrt(magnification);
-    const tile = tileFor(stretched / pitch);
+    // a chip of the rim spans its breadth along the wall, and must not meet one of a tile of the same colour
+    const breadth = (spec.conditions.constants.chipBreadthRatio / 2) * deepestEdgeChip;
+    const tile = tileFor(Math.max(stretched, breadth) / pitch);
     const nx = Math.max(2 * tile, roundUp(loop.length / pitch, 2 * tile));
     const rimCells = Math.max(nx, Math.ceil(loop.length / (0.1 * spec.conditions.grit.massMedian)));
     return {

@@ -7,12 +7,14 @@ export interface Workpiece {
   readonly field: Field;
   readonly step: Float64Array;
   readonly rim: Rim | null;
+  /** Tables of each zone of the slurry, and the zone of each tile; one table serves a field without zones. */
+  readonly tables: readonly KernelTables[];
+  readonly tileZones: Uint8Array | null;
 }
 
 /** What the tiles of a step need: the fields in a fixed order, and the tables. */
 export interface TileWork {
   readonly pieces: readonly Workpiece[];
-  readonly tables: KernelTables;
   /** Tasks of each of the four colours; a task is (piece << 24) | tile. */
   readonly colours: readonly Int32Array[];
 }
@@ -23,7 +25,7 @@ export interface TileRunner {
 }
 
 /** Lists the tiles of every field by colour, (x even/odd) and (y even/odd): tiles of one colour never touch. */
-export function tileWork(pieces: readonly Workpiece[], tables: KernelTables): TileWork {
+export function tileWork(pieces: readonly Workpiece[]): TileWork {
   const colours: number[][] = [[], [], [], []];
   pieces.forEach(({ field }, piece) => {
     for (let tile = 0; tile < field.tilesX * field.tilesY; tile++) {
@@ -32,15 +34,28 @@ export function tileWork(pieces: readonly Workpiece[], tables: KernelTables): Ti
       (colours[(tx & 1) | ((ty & 1) << 1)] as number[]).push((piece << 24) | tile);
     }
   });
-  return { pieces, tables, colours: colours.map((tasks) => Int32Array.from(tasks)) };
+  return { pieces, colours: colours.map((tasks) => Int32Array.from(tasks)) };
 }
 
-/** The fields of a state in their fixed order: strip first, since its few tiles are the longest, then floor and walls. */
-export function piecesOf(state: CutState): Workpiece[] {
+/**
+ * The fields of a cut in their fixed order: strip first, since its few tiles are the longest, then floor and walls. The
+ * strip has the slurry of the middle zone; the walls' own renewal stands for theirs.
+ */
+export function piecesOf(model: CutModel, state: CutState): Workpiece[] {
+  const fresh = [model.tables.kernel];
+  const zones = state.zones?.zones ?? fresh;
+  const middle = [zones[zones.length >> 1] as KernelTables];
+  const tileZones = model.slurry?.tileZones ?? null;
   return [
-    ...(state.strip ? [{ field: state.strip, step: state.stripStep, rim: null }] : []),
-    { field: state.floor, step: state.floorStep, rim: null },
-    ...state.walls.map((wall) => ({ field: wall.field, step: wall.step, rim: wall.rim })),
+    ...(state.strip ? [{ field: state.strip, step: state.stripStep, rim: null, tables: middle, tileZones: null }] : []),
+    { field: state.floor, step: state.floorStep, rim: null, tables: zones, tileZones },
+    ...state.walls.map((wall) => ({
+      field: wall.field,
+      step: wall.step,
+      rim: wall.rim,
+      tables: fresh,
+      tileZones: null,
+    })),
   ];
 }
 
@@ -49,13 +64,14 @@ export function runTask(kernel: Kernel, work: TileWork, task: number): void {
   const piece = work.pieces[task >> 24] as Workpiece;
   if (piece.step[STEP.active] !== 1) return;
   const tile = task & 0xffffff;
-  if (piece.rim) kernel.hitWall(piece.field, work.tables, piece.step, tile, piece.rim);
-  else kernel.hitFloor(piece.field, work.tables, piece.step, tile);
+  const tables = piece.tables[piece.tileZones ? (piece.tileZones[tile] as number) : 0] as KernelTables;
+  if (piece.rim) kernel.hitWall(piece.field, tables, piece.step, tile, piece.rim);
+  else kernel.hitFloor(piece.field, tables, piece.step, tile);
 }
 
 /** Runs every tile on the calling thread. */
 export function serialRunner(kernel: Kernel, model: CutModel, state: CutState): TileRunner {
-  const work = tileWork(piecesOf(state), model.tables.kernel);
+  const work = tileWork(piecesOf(model, state));
   return {
     run() {
       for (const tasks of work.colours) for (const task of tasks) runTask(kernel, work, task);

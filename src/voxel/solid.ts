@@ -171,7 +171,7 @@ class ColumnReader {
   /** How far outside the tool the wall, its cracks and the rim's chips can lie (m). */
   private reach(): number {
     const { grit, constants } = this.model.spec.conditions;
-    return grit.largest * (2 + constants.chipWidthRatio);
+    return 2 * grit.largest + constants.chipWidthRatio * this.model.deepestEdgeChip;
   }
 
   fill(k0: number, pitch: number, solid: Uint8Array, damage: Uint8Array, age: Uint8Array): void {

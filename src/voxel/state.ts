@@ -4,7 +4,9 @@ import { philox, streamKey } from '#src/base/philox.ts';
 import { emptyCounts, type HeightCounts } from './balance.ts';
 import { type Allocate, allocatePlain, fieldFrom, makeField, makeRim, rimFrom } from './field.ts';
 import { type Field, OUT_OF_REACH, type Rim, STEPS } from './kernels/contract.ts';
-import type { CutModel } from './model.ts';
+import { type CutModel, EDGE_ZONES } from './model.ts';
+import { makeZoneTables, type ZoneTables } from './slurry.ts';
+import { type GapMeans, makeMeans } from './tables.ts';
 
 /** Indices of the numbers of a cut that change, one float64 each, saved and restored with the fields. */
 export const SCALAR = {
@@ -61,8 +63,16 @@ export const SCALAR = {
   /** Floor hits, each counting its magnification; over the cut and since the last record. */
   impacts: 39,
   recentImpacts: 40,
+  /** Depth at which the slurry is worked out next (m), and what it came to last. */
+  nextSlurryDepth: 41,
+  stall: 42,
+  freshShare: 43,
+  stalled: 44,
+  smoothLowered: 45,
+  smoothCycles: 46,
+  lastCycles: 47,
 } as const;
-export const SCALARS = 41;
+export const SCALARS = 48;
 
 /** One wall: its field, its rim, and where floor columns map along it. */
 export interface WallState {
@@ -83,6 +93,9 @@ export interface CutState {
   readonly strip: Field | null;
   readonly stripStep: Float64Array;
   readonly walls: readonly WallState[];
+  /** Means by gap that the load balance reads; fresh, or renewed with the slurry. */
+  readonly means: GapMeans;
+  readonly zones: ZoneTables | null;
   readonly counts: HeightCounts;
   readonly stripCounts: HeightCounts;
   /** Columns outside the tool: index, distance outside the outline (m), wall loop and arc length there (m). */
@@ -101,12 +114,23 @@ export interface Surroundings {
 
 const stepRow = (allocate: Allocate) => new Float64Array(allocate(STEPS * 8), 0, STEPS);
 
-/** A fresh cut: untouched work, the tool just above it. */
+/** Columns under the flat face below which the load cannot be balanced. */
+const FEWEST_FACE_COLUMNS = 50;
+
+/**
+ * A fresh cut: untouched work, the tool just above it.
+ * @throws RangeError when the tool has next to no flat face
+ */
 export function makeState(model: CutModel, allocate: Allocate = allocatePlain): CutState {
   const floorBuffer = makeField(model.floor, 0, allocate);
   const floor = fieldFrom(floorBuffer);
   const stripBuffer = model.strip ? makeField(model.strip, 0, allocate) : null;
   const { around, faceColumns } = mapSurroundings(model, floor);
+  if (faceColumns < FEWEST_FACE_COLUMNS) {
+    throw new RangeError(
+      'the tool has next to no flat face: its curved edge takes it all, or the voxel is too coarse for it',
+    );
+  }
   markUnscaled(model, floor);
   const walls = model.walls.map((wall, k): WallState => {
     const buffer = makeField(wall.spec, OUT_OF_REACH, allocate);
@@ -116,14 +140,20 @@ export function makeState(model: CutModel, allocate: Allocate = allocatePlain): 
     return { buffer, field: fieldFrom(buffer), rimBuffer, rim, step: stepRow(allocate) };
   });
   const scalars = new Float64Array(SCALARS);
+  scalars[SCALAR.freshShare] = 1;
+  scalars[SCALAR.lastCycles] = 1;
   scalars[SCALAR.face] = model.startGap;
   scalars[SCALAR.efold] = model.startEfold;
   scalars[SCALAR.stripFace] = model.startGap;
   scalars[SCALAR.stripEfold] = model.startEfold;
   const { drive } = model.spec;
   scalars[SCALAR.facePressure] = drive.kind === 'load' ? drive.load / model.outline.area : 0;
+  const flat = model.slurry?.setting.shape.zones ?? 1;
+  const means = model.slurry ? makeMeans(model.tables, flat, EDGE_ZONES) : model.means;
   return {
     scalars,
+    means,
+    zones: model.slurry ? makeZoneTables(model.tables.kernel, flat, allocate) : null,
     floorBuffer,
     floor,
     floorStep: stepRow(allocate),
@@ -131,8 +161,8 @@ export function makeState(model: CutModel, allocate: Allocate = allocatePlain): 
     strip: stripBuffer ? fieldFrom(stripBuffer) : null,
     stripStep: stepRow(allocate),
     walls,
-    counts: emptyCounts(model.means),
-    stripCounts: emptyCounts(model.means),
+    counts: emptyCounts(means),
+    stripCounts: emptyCounts(means),
     around,
     faceArea: faceColumns * floor.dx * floor.dy,
   };
@@ -177,7 +207,7 @@ function mapSurroundings(model: CutModel, floor: Field): { around: Surroundings;
  */
 function markUnscaled(model: CutModel, floor: Field): void {
   if (model.magnification === 1) return;
-  const reach = 1.5 * model.chipRadius * Math.sqrt(model.magnification);
+  const reach = model.largestChip * Math.sqrt(model.magnification);
   const per = floor.tile / floor.block;
   const half = (floor.block / 2) * floor.dx;
   for (let k = 0; k < floor.unscaled.length; k++) {
@@ -201,7 +231,7 @@ function scatterSites(model: CutModel, rim: Rim, wall: number): void {
   });
 }
 
-/** A copy of everything that changes, in one list of buffers: scalars, floor, strip, then wall and rim of each loop. */
+/** A copy of everything that changes, in one list of buffers: scalars, floor, strip, wall and rim of each loop, slurry. */
 export function saveState(state: CutState): ArrayBuffer[] {
   const copy = (buffer: ArrayBufferLike) => new Uint8Array(buffer).slice().buffer;
   return [
@@ -209,6 +239,7 @@ export function saveState(state: CutState): ArrayBuffer[] {
     copy(state.floorBuffer),
     ...(state.stripBuffer ? [copy(state.stripBuffer)] : []),
     ...state.walls.flatMap((wall) => [copy(wall.buffer), copy(wall.rimBuffer)]),
+    ...(state.zones ? [copy(state.zones.buffer), copy(state.means.buffer)] : []),
   ];
 }
 
@@ -222,6 +253,7 @@ export function restoreState(state: CutState, saved: readonly ArrayBuffer[]): vo
     state.floorBuffer,
     ...(state.stripBuffer ? [state.stripBuffer] : []),
     ...state.walls.flatMap((wall) => [wall.buffer, wall.rimBuffer]),
+    ...(state.zones ? [state.zones.buffer, state.means.buffer] : []),
   ];
   const fits = saved.length === targets.length && targets.every((t, k) => t.byteLength === saved[k]?.byteLength);
   if (!fits) throw new RangeError('the saved state belongs to another job');

@@ -19,6 +19,8 @@ const TAIL_ENTRIES = 4097;
 const HIT_DIAMETERS = 33;
 const HIT_OVERLAPS = 513;
 const DETACH_ENTRIES = 257;
+/** Steps of gap from none to the largest grain. */
+const GAP_STEPS = 1200;
 
 /** What the tables are built for, beside the conditions. */
 export interface TableSetting {
@@ -47,13 +49,14 @@ export function buildTables(conditions: Conditions, setting: TableSetting): CutT
   coefficients[COEFFICIENT.dentRadius] = 1 / Math.sqrt(Math.PI * work.hardness);
   coefficients[COEFFICIENT.chipLoad] = constants.edgeChip * work.toughness;
   coefficients[COEFFICIENT.chipBreadth] = constants.chipBreadthRatio;
+  coefficients[COEFFICIENT.useful] = 1;
   coefficients[COEFFICIENT.runout] = setting.runout;
   coefficients[COEFFICIENT.runoutLargest] = setting.runout * constants.runoutCap;
 
   const tail = new Float32Array(TAIL_ENTRIES);
   for (let k = 0; k < TAIL_ENTRIES; k++) tail[k] = numberTail(grit, (k * grit.largest) / (TAIL_ENTRIES - 1));
   const grain = new Float32Array(GRAIN_OCTAVES * GRAIN_BINS_PER_OCTAVE + 1);
-  for (let k = 0; k < grain.length; k++) grain[k] = numberQuantile(grit, octaveValue(k));
+  for (let k = 0; k < grain.length; k++) grain[k] = numberQuantile(grit, grainProbability(k));
   const detach = new Float32Array(DETACH_ENTRIES);
   for (let k = 0; k < DETACH_ENTRIES; k++) {
     detach[k] = constants.chipYield * hitYield(conditions, (k * grit.largest) / (DETACH_ENTRIES - 1));
@@ -83,7 +86,7 @@ export function buildTables(conditions: Conditions, setting: TableSetting): CutT
 }
 
 /** The probability at entry k of the grain table: 64 steps within each octave, from 2^-32 up to 1. */
-function octaveValue(k: number): number {
+export function grainProbability(k: number): number {
   const octave = Math.floor(k / GRAIN_BINS_PER_OCTAVE);
   const inside = k % GRAIN_BINS_PER_OCTAVE;
   let low = 1;
@@ -113,70 +116,138 @@ function hitTables(conditions: Conditions, crack: number): { hits: Float32Array;
   return { hits, toolDents };
 }
 
-/** Means over the size law of what one grain does, by gap and distance beyond the curved edge's start. */
+/** Means over the size law of what one grain does, by gap and zone: flat zones first, then the curved edge's. */
 export interface GapMeans {
-  /** Gap between neighbouring entries (m); entry k is the gap k step. */
+  /** Gap between neighbouring entries (m); entry k is the gap k step, less `lift` under the curved edge. */
   readonly step: number;
   readonly entries: number;
-  /** Edge distance at the middle of each zone (m); zone 0 is the flat face. */
+  /** The edge's columns may stand above the face, up to where the tool has its full width: gaps there run from -lift (m). */
+  readonly lift: number;
+  /** Flat zones, each with a population of its own; the rest lie under the tool's curved edge. */
+  readonly flat: number;
+  /** Distance beyond the start of the curved edge at the middle of each zone (m); 0 for the flat ones. */
   readonly zones: Float64Array;
-  /** Impulse per grain in the film (N s), zones x entries. */
+  /** Impulse per fresh grain in the film (N s), zones x entries. */
   readonly impulse: Float64Array;
-  /** Tool dent per grain in the film (m3), zones x entries. */
+  /** Tool dent that wears the tool, per fresh grain in the film (m3), zones x entries. */
   readonly toolDent: Float64Array;
-  /** Share of grains engaged, zones x entries. */
+  /** Grains engaged per fresh grain in the film, zones x entries. */
   readonly engaged: Float64Array;
+  /** All three in one piece of memory. */
+  readonly buffer: ArrayBufferLike;
 }
 
-/** Averages the hit tables over the size law for every gap and zone. */
-export function gapMeans(conditions: Conditions, tables: CutTables, zoneCount: number, entries = 1201): GapMeans {
-  const { coefficients, hits, hitOverlaps } = tables.kernel;
+/** The grit of a flat zone: number shares by size class, and the share of its hits that are useful. */
+export interface ZoneGrit {
+  readonly shares: Float64Array;
+  readonly useful: number;
+}
+
+/** Empty means for so many flat zones and zones of the edge. */
+export function makeMeans(tables: CutTables, flat: number, edges: number): GapMeans {
+  const { coefficients } = tables.kernel;
   const largest = coefficients[COEFFICIENT.largest] as number;
-  const edgeRadius = coefficients[COEFFICIENT.edgeRadius] as number;
-  const reach = largest / 2 + edgeRadius;
-  const { diameter, fraction } = sizeClasses(conditions.grit);
-  const step = largest / (entries - 1);
-  const zones = Float64Array.from({ length: zoneCount }, (_, k) =>
-    k === 0 ? 0 : ((k - 0.5) / (zoneCount - 1)) * reach,
+  const lift = coefficients[COEFFICIENT.edgeRadius] as number;
+  const reach = largest / 2 + lift;
+  const step = largest / GAP_STEPS;
+  const entries = GAP_STEPS + 1 + Math.ceil(lift / step);
+  const zones = Float64Array.from({ length: flat + edges }, (_, k) =>
+    k < flat ? 0 : ((k - flat + 0.5) / edges) * reach,
   );
-  const impulse = new Float64Array(zoneCount * entries);
-  const toolDent = new Float64Array(zoneCount * entries);
-  const engaged = new Float64Array(zoneCount * entries);
-  const perMetreD = (HIT_DIAMETERS - 1) / largest;
-  const perMetreO = (hitOverlaps - 1) / largest;
-  for (let zone = 0; zone < zoneCount; zone++) {
-    const e = zones[zone] as number;
-    for (let c = 0; c < diameter.length; c++) {
-      const d = diameter[c] as number;
-      const q = fraction[c] as number;
-      const r = d / 2 + edgeRadius;
-      if (e >= r) continue;
-      const long = e > 0 ? d / 2 + Math.sqrt(r * r - e * e) - edgeRadius : d;
-      const a = Math.min(d * perMetreD, HIT_DIAMETERS - 1.001);
-      const i = Math.floor(a);
-      const fa = a - i;
-      for (let k = 0; k < entries; k++) {
-        const overlap = long - k * step;
-        if (overlap <= 0) break;
-        const b = Math.min(overlap * perMetreO, hitOverlaps - 1.001);
-        const j = Math.floor(b);
-        const fb = b - j;
-        const p = i * hitOverlaps + j;
-        const weights = [(1 - fa) * (1 - fb), (1 - fa) * fb, fa * (1 - fb), fa * fb] as const;
-        const cells = [p, p + 1, p + hitOverlaps, p + hitOverlaps + 1] as const;
-        let meanImpulse = 0;
-        let meanDent = 0;
-        for (let w = 0; w < 4; w++) {
-          const cell = cells[w] as number;
-          meanImpulse += (weights[w] as number) * (hits[cell * HIT_CHANNELS + HIT.impulse] as number);
-          meanDent += (weights[w] as number) * (tables.toolDents[cell] as number);
-        }
-        const at = zone * entries + k;
-        impulse[at] = (impulse[at] as number) + q * meanImpulse;
-        toolDent[at] = (toolDent[at] as number) + q * meanDent;
-        engaged[at] = (engaged[at] as number) + q;
+  const size = zones.length * entries;
+  const buffer = new ArrayBuffer(3 * 8 * size);
+  return {
+    buffer,
+    step,
+    entries,
+    lift,
+    flat,
+    zones,
+    impulse: new Float64Array(buffer, 0, size),
+    toolDent: new Float64Array(buffer, 8 * size, size),
+    engaged: new Float64Array(buffer, 16 * size, size),
+  };
+}
+
+/** Averages the hit tables over the grit of each zone; the edge has the grit of zone 0, the outermost. */
+export function fillMeans(
+  means: GapMeans,
+  conditions: Conditions,
+  tables: CutTables,
+  grits: readonly ZoneGrit[],
+): void {
+  const { impulse, toolDent, engaged, zones, flat, entries } = means;
+  const { coefficients } = tables.kernel;
+  const edgeRadius = coefficients[COEFFICIENT.edgeRadius] as number;
+  const { diameter } = sizeClasses(conditions.grit);
+  impulse.fill(0);
+  toolDent.fill(0);
+  engaged.fill(0);
+  const row = { impulse: new Float64Array(entries), toolDent: new Float64Array(entries) };
+  for (let c = 0; c < diameter.length; c++) {
+    const d = diameter[c] as number;
+    let long = d;
+    fillRow(row, means, tables, d, long);
+    for (let zone = 0; zone < zones.length; zone++) {
+      const grit = grits[zone < flat ? zone : 0] as ZoneGrit;
+      if (zone >= flat) {
+        const e = zones[zone] as number;
+        const r = d / 2 + edgeRadius;
+        if (e >= r) continue;
+        long = means.lift + d / 2 + Math.sqrt(r * r - e * e) - edgeRadius;
+        fillRow(row, means, tables, d, long);
+      }
+      const share = grit.shares[c] as number;
+      const at = zone * entries;
+      for (let k = 0; k < entries && k * means.step < long; k++) {
+        impulse[at + k] = (impulse[at + k] as number) + share * (row.impulse[k] as number);
+        toolDent[at + k] = (toolDent[at + k] as number) + share * grit.useful * (row.toolDent[k] as number);
+        engaged[at + k] = (engaged[at + k] as number) + share;
       }
     }
   }
-  return { step, entries, zones, impulse, toolDent, engaged };
+}
+
+/** What one grain of diameter d does at every gap it reaches across, `long` at a gap of none. */
+function fillRow(
+  row: { readonly impulse: Float64Array; readonly toolDent: Float64Array },
+  means: GapMeans,
+  tables: CutTables,
+  d: number,
+  long: number,
+): void {
+  const { coefficients, hits, hitOverlaps } = tables.kernel;
+  const largest = coefficients[COEFFICIENT.largest] as number;
+  const a = Math.min((d / largest) * (HIT_DIAMETERS - 1), HIT_DIAMETERS - 1.001);
+  const i = Math.floor(a);
+  const fa = a - i;
+  const perMetre = (hitOverlaps - 1) / largest;
+  for (let k = 0; k < means.entries; k++) {
+    const overlap = long - k * means.step;
+    if (overlap <= 0) break;
+    const b = Math.min(overlap * perMetre, hitOverlaps - 1.001);
+    const j = Math.floor(b);
+    const fb = b - j;
+    const p = i * hitOverlaps + j;
+    const q = p + hitOverlaps;
+    const low = (1 - fa) * (1 - fb);
+    const right = (1 - fa) * fb;
+    const up = fa * (1 - fb);
+    const both = fa * fb;
+    const impulse = (cell: number) => hits[cell * HIT_CHANNELS + HIT.impulse] as number;
+    row.impulse[k] = low * impulse(p) + right * impulse(p + 1) + up * impulse(q) + both * impulse(q + 1);
+    const dents = tables.toolDents;
+    row.toolDent[k] =
+      low * (dents[p] as number) +
+      right * (dents[p + 1] as number) +
+      up * (dents[q] as number) +
+      both * (dents[q + 1] as number);
+  }
+}
+
+/** Means of fresh grit under a face of one zone and its edge. */
+export function gapMeans(conditions: Conditions, tables: CutTables, zoneCount: number): GapMeans {
+  const means = makeMeans(tables, 1, zoneCount - 1);
+  fillMeans(means, conditions, tables, [{ shares: sizeClasses(conditions.grit).fraction, useful: 1 }]);
+  return means;
 }

@@ -3,11 +3,11 @@ import type { CutModel } from './model.ts';
 import { type CutState, SCALAR, type WallState } from './state.ts';
 
 /**
- * Opens the wall rows the tool face has passed. A new row starts at the foot: at each arc length the outermost floor
- * column that still stood below the face as it passed. The foot is what the floor cut there, not a number put in.
+ * Opens the wall rows the tool has passed at its full width, above its curved edge. A new row starts at the foot: at each
+ * arc length the outermost floor column that still stood below the tool as it passed. The foot is what the floor cut there, not a number put in.
  */
 export function openRows(model: CutModel, state: CutState): void {
-  const face = state.scalars[SCALAR.face] as number;
+  const face = passedHeight(model, state);
   const open = state.scalars[SCALAR.openRows] as number;
   const first = model.walls[0];
   if (!first) return;
@@ -27,6 +27,11 @@ export function openRows(model: CutModel, state: CutState): void {
     }
     if (k === 0) state.scalars[SCALAR.openRows] = to;
   });
+}
+
+/** Height the tool has passed at its full width (m). */
+export function passedHeight(model: CutModel, state: CutState): number {
+  return (state.scalars[SCALAR.face] as number) + model.spec.edgeRadius;
 }
 
 /** Rows of a wall that have been opened. */
@@ -50,30 +55,23 @@ function footAlong(state: CutState, wall: WallState, loop: number, face: number)
     const outer = (outside[n] as number) + pitch / 2;
     if (outer > (reach[i] as number)) reach[i] = outer;
   }
-  return fillFromBeside(reach, Math.max(1, Math.ceil(pitch / dx)));
+  // the tool has passed: no gap is less than what half a column can show
+  return fillFromBeside(reach).map((gap) => Math.max(gap, pitch / 2));
 }
 
-/** Each cell takes the largest value within `span` cells, so that columns wider than a cell leave no gaps. */
-function fillFromBeside(values: Float64Array, span: number): Float64Array {
+/** Cells without a column of their own (columns wider than a cell, a sharp inner corner) take the nearest one's gap. */
+function fillFromBeside(values: Float64Array): Float64Array {
   const n = values.length;
-  const out = new Float64Array(n);
+  const out = values.slice();
   for (let i = 0; i < n; i++) {
-    let best = Number.NEGATIVE_INFINITY;
-    for (let k = -span; k <= span; k++) best = Math.max(best, values[(i + k + n) % n] as number);
-    out[i] = best;
-  }
-  // an arc longer than the span without any column (a sharp inner corner) takes the nearest filled cell's gap
-  for (let i = 0; i < n; i++) {
-    if (Number.isFinite(out[i] as number)) continue;
-    for (let k = 1; k < n; k++) {
-      const before = out[(i - k + n) % n] as number;
-      const after = out[(i + k) % n] as number;
-      const found = Math.max(before, after);
+    if (Number.isFinite(values[i] as number)) continue;
+    out[i] = 0;
+    for (let k = 1; k <= n / 2; k++) {
+      const found = Math.max(values[(i - k + n) % n] as number, values[(i + k) % n] as number);
       if (!Number.isFinite(found)) continue;
       out[i] = found;
       break;
     }
   }
-  for (let i = 0; i < n; i++) if (!Number.isFinite(out[i] as number)) out[i] = 0;
   return out;
 }

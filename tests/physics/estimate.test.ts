@@ -140,7 +140,8 @@ describe('limits', () => {
             ...figures
           } = at({ ...base, work, amplitude, concentration }, pressure);
           const numbers = [...Object.values(figures), ...Object.values(edgeChipP95), ...Object.values(edgeChipLargest)];
-          for (const value of numbers) expect(Number.isFinite(value) && value >= 0).toBe(true);
+          // with fresh grit there is no stall: its two figures are null
+          for (const value of numbers) expect(value === null || (Number.isFinite(value) && value >= 0)).toBe(true);
           expect(typeof carried).toBe('boolean');
         },
       ),

@@ -33,8 +33,7 @@ function drawing(entry: number, depth: number, more: Partial<SectionDrawing> = {
     depth,
     entrySize: entry,
     floorSize: floor,
-    taperLeft: 0.0072,
-    taperRight: 0.0076,
+    taper: 0.0072,
     cornerRadius: 0.1 * depth,
     chip: { width: 54e-6, depth: 18e-6, side: 'left' },
     tool: {

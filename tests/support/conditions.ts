@@ -62,6 +62,7 @@ export const grades = {
   F220: gritLaw({ massMedian: 60.5e-6, spread: 0.181, largest: 106e-6 }),
   F320: gritLaw({ massMedian: 29.2e-6, spread: 0.275, largest: 1.3 * 49e-6 }),
   F600: gritLaw({ massMedian: 9.3e-6, spread: 0.38, largest: 1.3 * 19e-6 }),
+  F1200: gritLaw({ massMedian: 3e-6, spread: 0.451, largest: 1.3 * 7e-6 }),
 } satisfies Record<string, GritLaw>;
 
 /** Boron carbide F320 at 30 vol%, steel tool, 20 um at 20 kHz, unless said. */

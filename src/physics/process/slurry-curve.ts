@@ -36,7 +36,7 @@ export interface CurvePoint {
   readonly zones: readonly ZoneState[];
 }
 
-/** A load curve at one depth: points of rising pressure up to the stall. */
+/** A load curve at one depth: points of rising pressure. */
 export interface SlurryCurve {
   readonly depth: number;
   readonly points: readonly CurvePoint[];
@@ -48,7 +48,7 @@ export interface SlurryCurve {
 const HIGHEST_PRESSURE = 3e6;
 /** Steps of gap from the largest grain down. */
 const STEPS = 160;
-/** A fall of the pressure below this share of the highest so far ends the curve: the face has starved. */
+/** A fall of the pressure below this share of the highest so far is the stall. */
 const STARVED = 0.97;
 
 /** Gap by gap, the places do not depend on the depth: worked out once for all depths. */
@@ -161,21 +161,28 @@ export function faceAt(
   return { gap: place.gap, roughness: at.roughness, pressure, rate, toolRate, zones };
 }
 
-/** The load curve at a depth, from the largest grain down until the grits no longer bear more: the stall. */
+/**
+ * The load curve at a depth, from the largest grain down: the points that bear more than any before them. Where the
+ * exchange breaks down the pressure falls as the gap closes; the highest before that is the stall, and what comes after
+ * is the starved face a load beyond it drops to.
+ */
 export function slurryCurve(setting: SlurrySetting, places: CurvePlaces, depth: number): SlurryCurve {
   const points: CurvePoint[] = [];
   const first = places.places[0];
   const shares = new Float64Array(first ? first.place.impulse.length : 0);
   let highest = 0;
+  let stall = Number.POSITIVE_INFINITY;
   for (const at of places.places) {
     const point = faceAt(setting, at, depth, shares);
     if (point.pressure > highest) {
       highest = point.pressure;
       points.push(point);
-    } else if (point.pressure < STARVED * highest) return { depth, points, stall: highest };
+    } else if (point.pressure < STARVED * highest) {
+      stall = Math.min(stall, highest);
+    }
     if (highest > HIGHEST_PRESSURE) break;
   }
-  return { depth, points, stall: Number.POSITIVE_INFINITY };
+  return { depth, points, stall };
 }
 
 /** The point of a curve that bears a pressure, interpolated; the last point when it bears less. */
@@ -211,7 +218,7 @@ export function pointAt(curve: SlurryCurve, pressure: number): CurvePoint & { re
   };
 }
 
-/** The point of the highest rate: the best load, a step short of the stall. */
+/** The point of the highest rate up to the stall: the best load. */
 export function bestPoint(curve: SlurryCurve): CurvePoint {
-  return curve.points.reduce((best, point) => (point.rate > best.rate ? point : best));
+  return curve.points.reduce((best, point) => (point.pressure <= curve.stall && point.rate > best.rate ? point : best));
 }

@@ -51,7 +51,7 @@ export interface Field {
   readonly unscaled: Uint8Array;
   /** Sums of the step, SUMS per tile (indices below). */
   readonly sums: Float64Array;
-  /** Hits by load, LOAD_BINS per tile, adding up over the whole cut. */
+  /** Hits by load, LOAD_BINS per tile, each for what it stands for, adding up over the whole cut. */
   readonly loads: Float64Array;
 }
 
@@ -124,8 +124,10 @@ export const COEFFICIENT = {
   chipBreadth: 6,
   runout: 7,
   runoutLargest: 8,
+  /** Share of the hits that debris does not shield: scales what leaves, not the load. */
+  useful: 9,
 } as const;
-export const COEFFICIENTS = 9;
+export const COEFFICIENTS = 10;
 
 /** Channels of the hit table. */
 export const HIT = { load: 0, impulse: 1, dent: 2, crack: 3 } as const;
@@ -133,7 +135,7 @@ export const HIT_CHANNELS = 4;
 
 export interface KernelTables {
   readonly coefficients: Float64Array;
-  /** Share of grains longer than g, at g = k largest / (n - 1). */
+  /** Grains longer than g over the fresh grains that came in, at g = k largest / (n - 1). */
   readonly tail: Float32Array;
   /** Grain diameter whose tail is p: 64 entries per octave of p, from 2^-32 to 1 (m). */
   readonly grain: Float32Array;

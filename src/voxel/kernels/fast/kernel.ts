@@ -22,6 +22,13 @@ import { type Footprint, stampChip, stampDent } from './stamp.ts';
 const LN2 = Math.LN2;
 const TWO_TO_MINUS_32 = 2.3283064365386963e-10;
 
+/** How far the tool's curved edge stands above its face, `e` beyond the place where it begins to curve (m). */
+function riseAt(edgeRadius: number, e: number): number {
+  if (e <= 0) return 0;
+  if (e >= edgeRadius) return edgeRadius;
+  return edgeRadius - Math.sqrt(edgeRadius * edgeRadius - e * e);
+}
+
 /** True where every column of a tile is out of reach or passed by the tool: heights only fall, so it stays so. */
 function isIdle(field: Field, tile: number): boolean {
   const { bounds } = field;
@@ -101,13 +108,13 @@ export function createFastKernel(): Kernel {
     return low + (place - k) * ((detach[k + 1] as number) - low);
   }
 
-  function countLoad(loads: Float64Array, tile: number, load: number): void {
+  function countLoad(loads: Float64Array, tile: number, load: number, stands: number): void {
     real[0] = load;
     let bin = ((bits[0] as number) >> 20) - ((127 + LOAD_BIN_FIRST_EXPONENT) << 3);
     if (bin < 0) bin = 0;
     if (bin >= LOAD_BINS) bin = LOAD_BINS - 1;
     const k = tile * LOAD_BINS + bin;
-    loads[k] = (loads[k] as number) + 1;
+    loads[k] = (loads[k] as number) + stands;
   }
 
   /** Lowers the reachable columns evenly and renews the bounds of one tile; returns the volume taken. */
@@ -130,9 +137,9 @@ export function createFastKernel(): Kernel {
           let column = (row0 + by * block + j) * nx + col0 + bx * block;
           for (let i = 0; i < block; i++, column++) {
             const h = heights[column] as number;
-            if (h >= face || h <= OUT_OF_REACH) continue;
+            if (h <= OUT_OF_REACH) continue;
             const e = edged ? (edges[column] as number) : 0;
-            if (e >= most) continue;
+            if (e >= most || h >= face + riseAt(edgeRadius, e)) continue;
             let reached = h;
             if (even > 0) {
               heights[column] = h - even;
@@ -175,7 +182,10 @@ export function createFastKernel(): Kernel {
     const radiusFactor = coefficients[COEFFICIENT.radius] as number;
     const depthFactor = coefficients[COEFFICIENT.depth] as number;
     const dentFactor = coefficients[COEFFICIENT.dentRadius] as number;
+    const useful = coefficients[COEFFICIENT.useful] as number;
     const edged = edges.length > 0;
+    // columns the tool has passed at its full width are wall
+    const top = edged ? face + edgeRadius : face;
     const per = side / block;
     const blocks = per * per;
     const row0 = ((tile / field.tilesX) | 0) * side;
@@ -215,8 +225,8 @@ export function createFastKernel(): Kernel {
         const y = row0 + ((k / per) | 0) * block + (((place & 0xffff) + 0.5) / 65536) * block;
         const column = (y | 0) * nx + (x | 0);
         const h0 = heights[column] as number;
-        if (h0 >= face) continue;
         const e = edged ? (edges[column] as number) : 0;
+        if (h0 >= face + riseAt(edgeRadius, e)) continue;
         let long = d;
         if (e > 0) {
           const reach = d / 2 + edgeRadius;
@@ -233,7 +243,7 @@ export function createFastKernel(): Kernel {
         loadSum += load;
         if (load > largestLoad) largestLoad = load;
         impulse += local * (hit[1] as number);
-        countLoad(loads, tile, load);
+        countLoad(loads, tile, load, local);
         const tip = h0 - (hit[3] as number);
         if (tip < (cracks[column] as number)) cracks[column] = tip;
 
@@ -244,20 +254,20 @@ export function createFastKernel(): Kernel {
         const root = Math.sqrt(load);
         const threshold = thresholds[mark >>> 22] as number;
         const before = (sums[base + SUM.chipRemoved] as number) + (sums[base + SUM.dentRemoved] as number);
-        if (load > threshold && (mark & 0xffff) < 65536 * detachAt(detach, perLargest, d)) {
+        if (load > threshold && (mark & 0xffff) < 65536 * useful * detachAt(detach, perLargest, d)) {
           const quarter = Math.sqrt(root);
           const onset = 1 - Math.sqrt(Math.sqrt(threshold / load));
           at.radius = Math.min(widest, radiusFactor * root * Math.sqrt(quarter) * Math.sqrt(onset));
           at.depth = depthFactor * root;
-          at.limit = Math.min(face, h0 + at.radius);
+          at.limit = Math.min(top, h0 + at.radius);
           chips++;
           radiusSum += at.radius;
           depthSum += at.depth;
           stampChip(field, at, scale, base);
         }
         at.radius = dentFactor * root;
-        at.limit = face;
-        stampDent(field, at, (hit[2] as number) * local, scale, base);
+        at.limit = top;
+        stampDent(field, at, (hit[2] as number) * local * useful, scale, base);
         if (e === 0) {
           faceRemoved += (sums[base + SUM.chipRemoved] as number) + (sums[base + SUM.dentRemoved] as number) - before;
         }
@@ -357,7 +367,7 @@ export function createFastKernel(): Kernel {
         const load = hit[0] as number;
         loadSum += load;
         if (load > largestLoad) largestLoad = load;
-        countLoad(loads, tile, load);
+        countLoad(loads, tile, load, m);
         const tip = h0 - (hit[3] as number);
         if (tip < (cracks[column] as number)) cracks[column] = tip;
 

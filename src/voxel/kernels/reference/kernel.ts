@@ -73,6 +73,13 @@ function reachOf(tables: KernelTables, d: number, beyond: number): number {
   return d / 2 + Math.sqrt(radius * radius - beyond * beyond) - edgeRadius;
 }
 
+/** How far the tool's curved edge stands above its face over a column this far beyond the start of the edge (m). */
+function riseOf(tables: KernelTables, beyond: number): number {
+  const edgeRadius = at(tables.coefficients, COEFFICIENT.edgeRadius);
+  if (beyond <= 0) return 0;
+  return beyond >= edgeRadius ? edgeRadius : edgeRadius - Math.sqrt(edgeRadius * edgeRadius - beyond * beyond);
+}
+
 /** Renews the bounds of a tile's blocks, after the even lowering by free impacts. */
 function renewTile(field: Field, tables: KernelTables, step: Float64Array, tile: number): void {
   const face = at(step, STEP.face);
@@ -85,7 +92,8 @@ function renewTile(field: Field, tables: KernelTables, step: Float64Array, tile:
       const before = at(field.heights, column);
       const beyond = field.edges.length > 0 ? at(field.edges, column) : 0;
       const reach = reachOf(tables, largest, beyond);
-      if (before >= face || before <= OUT_OF_REACH || reach === Number.NEGATIVE_INFINITY) continue;
+      const passed = before >= face + riseOf(tables, beyond);
+      if (passed || before <= OUT_OF_REACH || reach === Number.NEGATIVE_INFINITY) continue;
       field.heights[column] = before - even;
       const after = at(field.heights, column);
       addTo(field, tile, SUM.freeRemoved, (before - after) * field.dx * field.dy);
@@ -178,7 +186,7 @@ function strike(
   const top = tile * SUMS + SUM.largestLoad;
   field.sums[top] = Math.max(at(field.sums, top), hit.load);
   const bin = tile * LOAD_BINS + loadBin(hit.load);
-  field.loads[bin] = at(field.loads, bin) + 1;
+  field.loads[bin] = at(field.loads, bin) + m;
   field.cracks[column] = Math.min(at(field.cracks, column), from - hit.crack);
 
   const root = Math.sqrt(hit.load);
@@ -192,8 +200,9 @@ function strike(
     limit,
   });
   let taken = 0;
+  const useful = at(tables.coefficients, COEFFICIENT.useful);
   const threshold = at(tables.thresholds, draw.threshold);
-  if (hit.load > threshold && draw.detachment < detachOf(tables, grain)) {
+  if (hit.load > threshold && draw.detachment < useful * detachOf(tables, grain)) {
     const onset = 1 - Math.sqrt(Math.sqrt(threshold / hit.load));
     const full = at(tables.coefficients, COEFFICIENT.radius) * root * Math.sqrt(Math.sqrt(root)) * Math.sqrt(onset);
     // a chip stays within half a tile of its centre, so that tiles of one colour never share a column
@@ -206,7 +215,7 @@ function strike(
     taken += takeChip(field, crater(radius, depth, Math.min(ceiling, from + radius)), tile, time);
   }
   const dentRadius = at(tables.coefficients, COEFFICIENT.dentRadius) * root;
-  taken += takeDent(field, crater(dentRadius, 0, ceiling), hit.dent * m, tile);
+  taken += takeDent(field, crater(dentRadius, 0, ceiling), hit.dent * m * useful, tile);
   return taken;
 }
 
@@ -228,6 +237,8 @@ function hitFloor(field: Field, tables: KernelTables, step: Float64Array, tile: 
   field.sums.fill(0, tile * SUMS, (tile + 1) * SUMS);
   if (at(step, STEP.renew) === 1) renewTile(field, tables, step, tile);
   const face = at(step, STEP.face);
+  // columns the tool has passed at its full width are wall
+  const ceiling = face + (field.edges.length > 0 ? at(tables.coefficients, COEFFICIENT.edgeRadius) : 0);
   const m = at(step, STEP.magnification);
   const per = field.tile / field.block;
   sweep(field, tables, step, tile, {
@@ -238,9 +249,9 @@ function hitFloor(field: Field, tables: KernelTables, step: Float64Array, tile: 
       const h = at(field.heights, candidate.column);
       const beyond = field.edges.length > 0 ? at(field.edges, candidate.column) : 0;
       const overlap = reachOf(tables, candidate.grain, beyond) - (face - h);
-      if (h >= face || !(overlap > 0)) return;
+      if (h >= face + riseOf(tables, beyond) || !(overlap > 0)) return;
       const hit = hitOf(tables, candidate.grain, overlap);
-      const taken = strike(field, tables, step, tile, candidate, { hit, ceiling: face });
+      const taken = strike(field, tables, step, tile, candidate, { hit, ceiling });
       if (beyond <= 0) addTo(field, tile, SUM.faceRemoved, taken);
     },
   });
