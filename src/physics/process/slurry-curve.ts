@@ -40,6 +40,8 @@ export interface CurvePoint {
 export interface SlurryCurve {
   readonly depth: number;
   readonly points: readonly CurvePoint[];
+  /** The face nearly closed: what a load that no gap bears drops to. */
+  readonly starved: CurvePoint;
   /** Pressure the grits bear before the exchange breaks down (Pa); Infinity when they bear all that was asked. */
   readonly stall: number;
 }
@@ -172,8 +174,10 @@ export function slurryCurve(setting: SlurrySetting, places: CurvePlaces, depth: 
   const shares = new Float64Array(first ? first.place.impulse.length : 0);
   let highest = 0;
   let stall = Number.POSITIVE_INFINITY;
+  let starved = faceAt(setting, first as CurvePlaces['places'][number], depth, shares);
   for (const at of places.places) {
     const point = faceAt(setting, at, depth, shares);
+    starved = point;
     if (point.pressure > highest) {
       highest = point.pressure;
       points.push(point);
@@ -182,15 +186,14 @@ export function slurryCurve(setting: SlurrySetting, places: CurvePlaces, depth: 
     }
     if (highest > HIGHEST_PRESSURE) break;
   }
-  return { depth, points, stall };
+  return { depth, points, starved, stall };
 }
 
-/** The point of a curve that bears a pressure, interpolated; the last point when it bears less. */
+/** The point of a curve that bears a pressure, interpolated; the starved face when none does. */
 export function pointAt(curve: SlurryCurve, pressure: number): CurvePoint & { readonly carried: boolean } {
   const { points } = curve;
   const k = points.findIndex((point) => point.pressure >= pressure);
-  const last = points.at(-1) as CurvePoint;
-  if (k < 0) return { ...last, carried: false };
+  if (k < 0) return { ...curve.starved, carried: false };
   if (k === 0) return { ...(points[0] as CurvePoint), carried: true };
   const low = points[k - 1] as CurvePoint;
   const high = points[k] as CurvePoint;
