@@ -163,7 +163,7 @@ class ColumnReader {
         const walled = column.outside < furthest;
         const bottom = Math.max(column.surface, column.crack, walled ? this.openDepth : 0);
         this.solidBelow = Math.max(this.solidBelow, bottom);
-        this.emptyAbove = Math.min(this.emptyAbove, column.surface);
+        this.emptyAbove = Math.min(this.emptyAbove, column.outside > 0 ? 0 : column.surface);
       }
     }
   }
@@ -186,6 +186,8 @@ class ColumnReader {
         if (column.wall) {
           const side = this.wallAt(column, top + pitch / 2, pitch);
           const chip = this.chipAt(column, top, pitch);
+          // outside the tool, rows the tool has passed are the wall's: a lone floor column left deep there is no slit
+          if (side !== NO_WALL && column.outside > 0) removed = 0;
           if (side.removed >= removed) when = side.age;
           removed = Math.max(removed, side.removed, chip);
           hurt = Math.max(hurt, side.damage);

@@ -16,7 +16,7 @@ export function openRows(model: CutModel, state: CutState): void {
     const from = k === 0 ? open : rowsOpen(wall);
     const to = Math.min(wall.field.ny, Math.floor(-face / wall.field.dy));
     if (to <= from) return;
-    const foot = footAlong(state, wall, k, face);
+    const foot = footAlong(state, wall, { loop: k, face, grain: model.spec.conditions.grit.massMedian });
     for (let row = from; row < to; row++) {
       for (let i = 0; i < wall.field.nx; i++) {
         const column = row * wall.field.nx + i;
@@ -42,8 +42,16 @@ export function rowsOpen(wall: WallState): number {
   return row;
 }
 
-/** Side gap along one loop at the face's height (m), nx: the outermost column below the face, holes filled from beside. */
-function footAlong(state: CutState, wall: WallState, loop: number, face: number): Float64Array {
+/**
+ * Side gap along one loop at the face's height (m), nx: the outermost column below the face, the median over the length of
+ * one median grain, since no grain follows a slit narrower than itself.
+ */
+function footAlong(
+  state: CutState,
+  wall: WallState,
+  at: { readonly loop: number; readonly face: number; readonly grain: number },
+): Float64Array {
+  const { loop, face, grain } = at;
   const { nx, dx } = wall.field;
   const { columns, outside, loops, along } = state.around;
   const { heights, dx: pitch } = state.floor;
@@ -56,7 +64,8 @@ function footAlong(state: CutState, wall: WallState, loop: number, face: number)
     if (outer > (reach[i] as number)) reach[i] = outer;
   }
   // the tool has passed: no gap is less than what half a column can show
-  return fillFromBeside(reach).map((gap) => Math.max(gap, pitch / 2));
+  const span = Math.max(1, Math.round(grain / 2 / dx));
+  return runningMedian(fillFromBeside(reach), span).map((gap) => Math.max(gap, pitch / 2));
 }
 
 /** Cells without a column of their own (columns wider than a cell, a sharp inner corner) take the nearest one's gap. */
@@ -74,4 +83,14 @@ function fillFromBeside(values: Float64Array): Float64Array {
     }
   }
   return out;
+}
+
+/** Median over 2 span + 1 cells of a closed row. */
+function runningMedian(values: Float64Array, span: number): Float64Array {
+  const n = values.length;
+  const window = new Float64Array(2 * span + 1);
+  return values.map((_, i) => {
+    for (let k = -span; k <= span; k++) window[k + span] = values[(((i + k) % n) + n) % n] as number;
+    return window.slice().sort()[span] as number;
+  });
 }

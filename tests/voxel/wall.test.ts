@@ -104,12 +104,14 @@ test('voxels hold the volume of the fields to 0.1 %', () => {
   const empty = (x: number, y: number, z: number) => {
     const i = Math.round((x - glass.model.x0) / floor.dx);
     const j = Math.round((y - glass.model.y0) / floor.dy);
-    if (z < -(floor.heights[j * floor.nx + i] as number)) return true;
     const near = nearest(outline, x, y);
     const row = Math.floor(z / wall.dy);
     const cell = Math.min(wall.nx - 1, Math.floor(near.s / wall.dx));
     const gap = row < wall.ny ? -(wall.heights[row * wall.nx + cell] as number) : 1;
-    if (gap < 0.5 && near.distance < gap) return true;
+    const open = gap < 0.5;
+    if (open && near.distance < gap) return true;
+    // outside the tool an open row is the wall's alone
+    if (!(open && near.distance > 0) && z < -(floor.heights[j * floor.nx + i] as number)) return true;
     const deep = rim.chips[Math.min(rim.n - 1, Math.floor(near.s / rim.spacing))] as number;
     const beyond = Math.max(0, near.distance + (wall.heights[cell] as number));
     return deep > 0 && beyond < ratio * deep && z < deep * Math.sqrt(1 - (beyond / (ratio * deep)) ** 2);
