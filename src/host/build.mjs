@@ -1,4 +1,5 @@
 // Builds dist/ in one go: into a folder beside it first, so that a build that fails or is stopped leaves the old one whole.
+import { execFileSync } from 'node:child_process';
 import { existsSync, renameSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
@@ -14,6 +15,10 @@ try {
     configFile: join(root, 'src/vite.config.ts'),
     logLevel: 'warn',
     build: { outDir: fresh },
+  });
+  // libraries that do not keep to their schema are no build
+  execFileSync(process.execPath, [join(fresh, 'cli.js'), 'libraries', '--check'], {
+    stdio: ['ignore', 'ignore', 'inherit'],
   });
   if (existsSync(dist)) renameSync(dist, old);
   renameSync(fresh, dist);

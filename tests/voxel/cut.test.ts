@@ -1,6 +1,8 @@
 import { describe, expect, test } from 'vitest';
+import type { Profile } from '#src/base/field.ts';
+import { profileTexture } from '#src/metrology/profile-texture.ts';
 import { estimate } from '#src/physics/estimate.ts';
-import { cutHash, makeCut, runCut } from '#src/voxel/cut.ts';
+import { cutHash, makeCut, runCut, stripProfile } from '#src/voxel/cut.ts';
 import { OUT_OF_REACH } from '#src/voxel/kernels/contract.ts';
 import { createFastKernel } from '#src/voxel/kernels/fast/kernel.ts';
 import { createReferenceKernel } from '#src/voxel/kernels/reference/kernel.ts';
@@ -185,4 +187,14 @@ test('the history is monotone in time, depth and tool loss', () => {
     expect(record.toolLost).toBeGreaterThan(before.toolLost);
     expect(record.edgeChip).toBeGreaterThanOrEqual(before.edgeChip);
   });
+});
+
+test('Ra of the trace does not depend on the pitch of the floor: halved from half the chip radius, it stays within 5 %', () => {
+  const ra = (columnsPerRadius: number) => {
+    const cut = makeCut(cutSpecOf({ diameter: 1.5e-3, depth: 40 * UM, columnsPerRadius, withoutStrip: false }));
+    runCut(cut, serialRunner(createFastKernel(), cut.model, cut.state), 1e6);
+    const rows = [0.1, 0.3, 0.5, 0.7, 0.9].map((across) => stripProfile(cut, across) as Profile);
+    return rows.reduce((sum, row) => sum + profileTexture(row).parameters.ra / rows.length, 0);
+  };
+  expect(Math.abs(ra(2) / ra(4) - 1)).toBeLessThan(0.05);
 });
