@@ -176,6 +176,30 @@ export function loadCurve(tables: EstimateTables, pressures: readonly number[]):
   });
 }
 
+/** Rate is solved for to this share. */
+const RATE_TOLERANCE = 1e-4;
+/** Pressures looked through for a rate (Pa). */
+const LEAST_PRESSURE = 1e2;
+const HIGHEST_PRESSURE = 1e8;
+
+/** Face pressure at which fresh grit sinks at a rate (Pa); undefined where no load the grits bear reaches it. */
+export function pressureForRate(tables: EstimateTables, rate: number): number | undefined {
+  const rateAt = (pressure: number) => loadCurve(tables, [pressure])[0] as LoadPoint;
+  let low = LEAST_PRESSURE;
+  let high = LEAST_PRESSURE;
+  for (let point = rateAt(high); point.rate < rate; point = rateAt(high)) {
+    if (!point.carried || high > HIGHEST_PRESSURE) return undefined;
+    low = high;
+    high *= 2;
+  }
+  while (high - low > RATE_TOLERANCE * high) {
+    const middle = (low + high) / 2;
+    if (rateAt(middle).rate < rate) low = middle;
+    else high = middle;
+  }
+  return high;
+}
+
 /** Side gap at a depth below the entry, once the cavity is finished (m). */
 function gapAt(wall: WallLaw, setting: EstimateSetting, rate: number, depth: number): number {
   return gapAfter(wall, rate > 0 ? (setting.depth - depth) / rate : 0);

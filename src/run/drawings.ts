@@ -1,5 +1,10 @@
 import { nominalSizes, pointAt } from '#src/base/outline.ts';
-import { DEGREES_PER_RADIAN, METRES_PER_MICROMETRE, METRES_PER_MILLIMETRE } from '#src/base/units.ts';
+import {
+  DEGREES_PER_RADIAN,
+  METRES_PER_MICROMETRE,
+  METRES_PER_MILLIMETRE,
+  METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE,
+} from '#src/base/units.ts';
 import type { Limits, ResolvedJob } from '#src/formats/job/resolve.ts';
 import { formatNumber } from '#src/formats/numbers.ts';
 import { encodePng } from '#src/formats/png.ts';
@@ -58,9 +63,15 @@ function captionOf({ job, cut }: Drawable): string[] {
   const magnified = magnification > 1 ? `, lateral magnification ${formatNumber(magnification, 3)}` : '';
   return [
     `${work}, ${gritText(job)}, ${formatNumber(100 * conditions.concentration, 3)} vol%, ${amplitude} \u00b5m zero to peak at ` +
-      `${formatNumber(conditions.frequency / 1e3, 4)} kHz, ${formatNumber(job.staticLoad, 3)} N`,
+      `${formatNumber(conditions.frequency / 1e3, 4)} kHz, ${driveText(job)}`,
     `Voxel ${voxel} \u00b5m${magnified}, seed ${job.cut.seed}, Spallwright ${version}. An estimate, to be confirmed by a trial cut.`,
   ];
+}
+
+/** How the tool was driven, as a caption says it. */
+function driveText({ feed, staticLoad }: ResolvedJob): string {
+  if (feed === undefined) return `${formatNumber(staticLoad, 3)} N`;
+  return `fed at ${formatNumber(feed / METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE, 3)} mm/min`;
 }
 
 const titleOf = (job: ResolvedJob) => (job.title === '' ? 'Cavity' : job.title);

@@ -75,7 +75,7 @@ export function cutSpecOf(job: ResolvedJob): CutSpec {
     conditions: job.conditions,
     tool: job.tool,
     edgeRadius: job.edgeRadius,
-    drive: { kind: 'load', load: job.staticLoad },
+    drive: job.feed === undefined ? { kind: 'load', load: job.staticLoad } : { kind: 'feed', feed: job.feed },
     depth: job.depth,
     runout: job.runout,
     seed,

@@ -3,9 +3,11 @@ import {
   HERTZ_PER_KILOHERTZ,
   METRES_PER_MICROMETRE,
   METRES_PER_MILLIMETRE,
+  METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE,
   MICROMETRES_PER_METRE,
 } from '#src/base/units.ts';
 import { publishedConstants } from '#src/physics/constants.ts';
+import { estimateTables, pressureForRate } from '#src/physics/estimate.ts';
 import { gritLaw } from '#src/physics/grit-law.ts';
 import type { Abrasive, Conditions, ToolMaterial, WorkMaterial } from '#src/physics/records.ts';
 import type { GritSizes, Library, WorkpieceRecord } from '../library.ts';
@@ -51,7 +53,10 @@ export interface Draft {
   readonly overcut: number | undefined;
   readonly edgeRadius: number;
   readonly runout: number;
+  /** Static load (N): the one given, the default, or what the feed is expected to take. */
   readonly staticLoad: number | undefined;
+  /** Feed of a feed-controlled machine (m/s). */
+  readonly feed: number | undefined;
   readonly stock: Stock | undefined;
   /** Paths of the fields that took their default. */
   readonly defaultsUsed: readonly string[];
@@ -109,7 +114,8 @@ export function draftJob(job: PartialJob, library: Library, predictOvercut: Pred
     overcut,
     edgeRadius: orDefault(desk, 'tool.edgeRadiusMm', job.tool?.edgeRadiusMm) * METRES_PER_MILLIMETRE,
     runout,
-    staticLoad: loadFor(desk, job, tool),
+    staticLoad: loadFor(desk, job, tool, conditions),
+    feed: feedOf(job),
     stock: stockFor(desk, job.workpiece ?? {}, cavity, depth),
     defaultsUsed: desk.defaultsUsed,
     problems: desk.problems,
@@ -171,10 +177,40 @@ export function insideBy(spec: OutlineSpec, distance: number): OutlineSpec | und
   }
 }
 
-function loadFor(desk: Desk, job: PartialJob, tool: Outline | undefined): number | undefined {
-  if (job.machine?.staticLoadN !== undefined) return job.machine.staticLoadN;
+function feedOf({ machine }: PartialJob): number | undefined {
+  const feed = machine?.feedMmPerMin;
+  return feed === undefined ? undefined : feed * METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE;
+}
+
+function loadFor(
+  desk: Desk,
+  job: PartialJob,
+  tool: Outline | undefined,
+  conditions: Conditions | undefined,
+): number | undefined {
+  const feed = feedOf(job);
+  const given = job.machine?.staticLoadN;
+  if (feed !== undefined && given !== undefined) {
+    const message = 'A machine is driven by a load or by a feed, not by both. Take one of the two out.';
+    return refuse(desk, 'machine.feedMmPerMin', job.machine?.feedMmPerMin, 'staticLoadN or feedMmPerMin', message);
+  }
+  if (given !== undefined) return given;
+  if (feed !== undefined) return tool && conditions && loadOfFeed(desk, job, feed, { tool, conditions });
   desk.defaultsUsed.push('machine.staticLoadN');
   return tool && DEFAULT_PRESSURE * tool.area;
+}
+
+/** The load fresh grit takes to sink at the feed. */
+function loadOfFeed(
+  desk: Desk,
+  job: PartialJob,
+  feed: number,
+  { tool, conditions }: { readonly tool: Outline; readonly conditions: Conditions },
+): number | undefined {
+  const pressure = pressureForRate(estimateTables(conditions), feed);
+  if (pressure !== undefined) return pressure * tool.area;
+  const message = 'No load the grits bear sinks the tool at this feed. Enter less.';
+  return refuse(desk, 'machine.feedMmPerMin', job.machine?.feedMmPerMin, 'what the grits can cut', message);
 }
 
 function stockFor(

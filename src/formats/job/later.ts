@@ -3,7 +3,6 @@ export const LATER_FIELDS: Readonly<Record<string, string>> = {
   passes: 'This version cuts one pass, which tool, slurry and machine state. Take passes out.',
   'tool.bores': 'This version cuts with a tool face without slurry bores. Take bores out.',
   'tool.wearLengthMm': 'This version does not check the length left for wear. Take wearLengthMm out.',
-  'machine.feedMmPerMin': 'This version presses with a static load and has no feed control. Give staticLoadN instead.',
   'slurry.carrierViscosityMPaS': 'This version knows water only as the carrier. Take carrierViscosityMPaS out.',
   'slurry.deliveryPressureKPa': 'This version knows flooding only. Take deliveryPressureKPa out.',
 };

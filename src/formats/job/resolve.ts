@@ -61,8 +61,10 @@ export interface ResolvedJob {
   readonly predictedOvercut: number;
   /** Smallest gap between the tool and the wall as drawn (m). */
   readonly sideGap: number;
-  /** N */
+  /** Static load (N); under a feed, the load it is expected to take. */
   readonly staticLoad: number;
+  /** Feed of a feed-controlled machine (m/s). */
+  readonly feed: number | undefined;
   /** Static load over the tool's area (Pa). */
   readonly pressure: number;
   readonly runout: number;
@@ -114,6 +116,7 @@ export function resolveJob(file: JobFile, library: Library, options: ResolveOpti
     predictedOvercut: overcut ?? 0,
     sideGap: overcut !== undefined && draft.defaultsUsed.includes('tool.outline') ? overcut : sideGap(cavity, tool),
     staticLoad,
+    feed: draft.feed,
     pressure: staticLoad / tool.area,
     runout: draft.runout,
     cut: cutOf(file),
@@ -141,8 +144,11 @@ function cutDefaults({ cut }: JobFile): string[] {
   return paths;
 }
 
-function notesOf({ defaultsUsed, staticLoad, overcut }: Draft): string[] {
+function notesOf({ defaultsUsed, staticLoad, feed, overcut }: Draft): string[] {
   const notes: string[] = [];
+  if (feed !== undefined && staticLoad !== undefined) {
+    notes.push(`The feed is expected to take a load of ${formatNumber(staticLoad, 3)} N.`);
+  }
   if (defaultsUsed.includes('tool.outline') && overcut !== undefined) {
     const shown = formatNumber(overcut / METRES_PER_MICROMETRE, 3);
     notes.push(`The tool is the cavity less a predicted overcut of ${shown} um per side.`);

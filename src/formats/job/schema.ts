@@ -118,6 +118,13 @@ const machine = z
     frequencyKHz: quantity(10, 100, 'kHz', 'Frequency', 'Of the vibration.').optional(),
     amplitudeUm: um(0.1, 200, 'Amplitude', 'Zero-to-peak at the tool face under load.').optional(),
     staticLoadN: quantity(0.001, 20000, 'N', 'Static load', 'Force that presses the tool on.').optional(),
+    feedMmPerMin: quantity(
+      0.001,
+      100,
+      'mm/min',
+      'Feed',
+      'Rate a feed-controlled machine sinks at, instead of a load.',
+    ).optional(),
     lateralRunoutUm: um(0, 50, 'Lateral run-out', 'Sideways play of the tool face.').optional(),
   })
   .meta({ title: 'Machine', description: 'How the tool is driven.', unit: '' });

@@ -174,7 +174,6 @@ describe('fields alone', () => {
   test.each([
     ['passes', (j: Base) => Object.assign(j, { passes: [{}, {}] })],
     ['tool.bores', (j: Base) => Object.assign(j.tool, { bores: [] })],
-    ['machine.feedMmPerMin', (j: Base) => Object.assign(j.machine, { feedMmPerMin: 1 })],
     ['slurry.carrier', (j: Base) => Object.assign(j.slurry, { carrier: 'oil' })],
     ['slurry.delivery', (j: Base) => Object.assign(j.slurry, { delivery: 'suction' })],
     ['cavity.outline.kind', (j: Base) => Object.assign(j.cavity, { outline: { kind: 'polygon' } })],
