@@ -208,16 +208,7 @@ export function steadyFloor(sums: GapSums, pressure: number, guess?: FloorState)
     // the law rises slower than its argument, so its excess falls: keep the secant to that
     roughness -= excess / Math.min(-0.2, Math.max(-2, slope));
   }
-  return {
-    carried: true,
-    gap,
-    roughness,
-    loadHeight,
-    chipDepth: depths.chip,
-    craterDepth: depths.crater,
-    overlap: overlapOf(sums, depths.chip, loadHeight),
-    grits: gritsPerArea(conditions, gap),
-  };
+  return floorAt(sums, gap, roughness);
 }
 
 /** The state of the largest load the grits carry. */

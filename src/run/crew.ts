@@ -32,9 +32,6 @@ export interface CrewSetup {
   }[];
 }
 
-/** True where threads can share memory. */
-export const canShare = typeof SharedArrayBuffer !== 'undefined';
-
 /** Memory that a crew's threads share. */
 export const allocateShared: Allocate = (bytes) => new SharedArrayBuffer(bytes);
 

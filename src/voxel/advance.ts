@@ -56,7 +56,6 @@ function renewZones(model: CutModel, state: CutState): void {
   s[SCALAR.nextSlurryDepth] = depth + model.spec.depth / SLURRY_RENEWALS;
   s[SCALAR.stall] = came.stall === Number.POSITIVE_INFINITY ? 0 : came.stall;
   s[SCALAR.freshShare] = came.fresh;
-  if (!came.carried) s[SCALAR.stalled] = 1;
 }
 
 /** A stride over the columns, an odd prime, so that it shares no factor with a tile. */
@@ -326,7 +325,6 @@ function bookSums(state: CutState, sums: Float64Array, cycles: number, add: (k: 
   add(SCALAR.recentEngaged, at(SUM.engaged));
   add(SCALAR.recentLoad, at(SUM.load));
   add(SCALAR.recentTime, cycles);
-  add(SCALAR.recentAdvance, at(SUM.faceRemoved) / state.faceArea);
   s[SCALAR.largestLoad] = Math.max(s[SCALAR.largestLoad] as number, at(SUM.largestLoad));
   s[SCALAR.recentLargestLoad] = Math.max(s[SCALAR.recentLargestLoad] as number, at(SUM.largestLoad));
 }

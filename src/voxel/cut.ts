@@ -114,7 +114,6 @@ function recordOf(cut: Cut): CutRecord {
     SCALAR.recentImpacts,
     SCALAR.recentLoad,
     SCALAR.recentLargestLoad,
-    SCALAR.recentAdvance,
   ]) {
     s[k] = 0;
   }
@@ -126,11 +125,6 @@ export function stallMarginOf({ model, state }: Cut): number | null {
   const stall = state.scalars[SCALAR.stall] as number;
   if (!(stall > 0)) return null;
   return 1 - (state.scalars[SCALAR.setLoad] as number) / model.outline.area / stall;
-}
-
-/** True once the load was more than the slurry's exchange bears: the cut went on starved. */
-export function hasStalled({ state }: Cut): boolean {
-  return state.scalars[SCALAR.stalled] === 1;
 }
 
 /** Widest chip on the entry face (m). */
@@ -205,13 +199,6 @@ export function hitSummary(cut: Cut) {
     largestLoad: at(SCALAR.largestLoad),
     wallHits: at(SCALAR.wallHits),
   };
-}
-
-/** Steps the rest of the cut is likely to take, from the advance so far; for a time-left display. */
-export function stepsLeft(cut: Cut): number {
-  const done = progressOf(cut);
-  const steps = cut.state.scalars[SCALAR.step] as number;
-  return done > 0 ? Math.ceil((steps * (1 - done)) / done) : Number.POSITIVE_INFINITY;
 }
 
 /** A digest of all that changes: the same for any number of workers, chunked or whole. FNV-1a over the bytes, 64 bits in hex. */

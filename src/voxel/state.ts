@@ -52,27 +52,25 @@ export const SCALAR = {
   recentEngaged: 29,
   recentLoad: 30,
   recentLargestLoad: 31,
-  recentAdvance: 32,
-  nextRecordDepth: 33,
-  wallHits: 34,
-  wallRemoved: 35,
-  cycles: 36,
-  setLoad: 37,
+  nextRecordDepth: 32,
+  wallHits: 33,
+  wallRemoved: 34,
+  cycles: 35,
+  setLoad: 36,
   /** Tool dents per cycle at the last balance, per grain and square metre of film (m3). */
-  toolDents: 38,
+  toolDents: 37,
   /** Floor hits, each counting its magnification; over the cut and since the last record. */
-  impacts: 39,
-  recentImpacts: 40,
+  impacts: 38,
+  recentImpacts: 39,
   /** Depth at which the slurry is worked out next (m), and what it came to last. */
-  nextSlurryDepth: 41,
-  stall: 42,
-  freshShare: 43,
-  stalled: 44,
-  smoothLowered: 45,
-  smoothCycles: 46,
-  lastCycles: 47,
+  nextSlurryDepth: 40,
+  stall: 41,
+  freshShare: 42,
+  smoothLowered: 43,
+  smoothCycles: 44,
+  lastCycles: 45,
 } as const;
-export const SCALARS = 48;
+export const SCALARS = 46;
 
 /** One wall: its field, its rim, and where floor columns map along it. */
 export interface WallState {

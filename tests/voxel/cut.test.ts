@@ -198,3 +198,24 @@ test('Ra of the trace does not depend on the pitch of the floor: halved from hal
   };
   expect(Math.abs(ra(2) / ra(4) - 1)).toBeLessThan(0.05);
 });
+
+describe('small tools', () => {
+  test('carry the set load too, where the curved edge bears much of it: 0.3 mm and F220, four seeds', () => {
+    const loads = [1, 2, 3, 4].map((seed) => {
+      const conditions = conditionsOf({ grit: grades.F220 });
+      return steadyCut(cutSpecOf({ conditions, diameter: 0.3e-3, depth: 200 * UM, seed }), 40 * UM).load;
+    });
+    // a seed's mean is itself good to about 1.5 %, the mean of four to 0.8 %
+    expect(Math.abs(loads.reduce((sum, load) => sum + load / 4, 0) - 1)).toBeLessThan(0.025);
+  });
+
+  test('do not run past the depth: steps without a hit do not stretch the next ones', () => {
+    const { cut } = steadyCut(cutSpecOf({ diameter: 0.12e-3, depth: 100 * UM }), 20 * UM);
+    expect(-(cut.state.scalars[SCALAR.floorMean] as number)).toBeLessThan(1.1 * 100 * UM);
+  });
+
+  test('without a flat face, and pitches that lose the craters, are refused', () => {
+    expect(() => makeCut(cutSpecOf({ diameter: 0.06e-3 }))).toThrow(/no flat face/);
+    expect(() => makeCut(cutSpecOf({ pitch: 60e-6, magnification: 1 }))).toThrow(/loses craters/);
+  });
+});
