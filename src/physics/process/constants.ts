@@ -1,4 +1,6 @@
-/** Constants of the slurry under the face: exchange, debris and crushing. The same for every material and tool. */
+import type { ConstantNote } from '../constants.ts';
+
+/** Constants of the slurry under the face: exchange, debris and crushing. The same for every material and tool; see the notes. */
 export interface SlurryConstants {
   /** Local stirring k_D and pumping k_P in the dispersion D = X U (k_D h + k_P length). */
   readonly stirring: number;
@@ -25,5 +27,29 @@ export const slurryConstants: SlurryConstants = {
   exchangeReynolds: 20,
   shielding: 0.2,
   finesYield: 1,
-  debrisBulking: 12,
+  debrisBulking: 14,
+};
+
+export const slurryNotes: Record<keyof SlurryConstants, ConstantNote> = {
+  stirring: { min: 0.5, max: 4, source: 'assumed: eddies of the film\u2019s own height at the tool\u2019s speed' },
+  pumping: {
+    min: 0.01,
+    max: 0.05,
+    source: 'assumed: a small share of the breathing of the film carries over from cycle to cycle',
+  },
+  sideSpeed: { min: 0.3, max: 2, source: 'assumed: the side of the tool drags the slurry at about its own speed' },
+  sideGap: { min: 1.2, max: 2, source: 'side gap of 1.5 to 2 grains, common practice, from memory' },
+  exchangeReynolds: { min: 5, max: 60, source: 'assumed: films below this Reynolds number no longer stir' },
+  shielding: {
+    min: 0.1,
+    max: 0.4,
+    source: 'assumed: debris of a fifth of the grit\u2019s volume halves the useful hits',
+  },
+  finesYield: { min: 0.5, max: 1, source: 'volume is conserved when a grain breaks' },
+  debrisBulking: {
+    min: 6,
+    max: 45,
+    source:
+      'fitted: best load of 0.03 to 0.6 MPa (check D8). Flakes as the crack laws give them sweep 2 c / b, about 40 times their volume, and are broken up under the tool',
+  },
 };
