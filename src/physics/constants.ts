@@ -21,6 +21,8 @@ export interface ProcessConstants {
   readonly chipYield: number;
   /** Share of a plastic dent's volume that leaves as debris. */
   readonly plasticShare: number;
+  /** Reach of the lips pushed up round a dent, from which its debris breaks off, over the radius of contact. */
+  readonly lipRadius: number;
   /** Volume of tool lost per volume of dent in the tool face. */
   readonly toolPlasticShare: number;
   /** Hardness of a soft metal tool face at work over its tabulated hardness. */
@@ -82,6 +84,7 @@ export const publishedConstants: ProcessConstants = {
   thresholdScatter: 0.6,
   chipYield: 1,
   plasticShare: 1,
+  lipRadius: 2.5,
   toolPlasticShare: 0.013,
   toolHardening: 1.6,
   toolHardeningLimit: 4e9,
@@ -139,6 +142,12 @@ export const constantNotes: Record<keyof ProcessConstants, ConstantNote> = {
       'fitted: rate of sinking glass, 3.81 mm/min (check D1; Benedict 1987, from memory), at its physical limit: shallow chips that always leave',
   },
   plasticShare: { min: 0.3, max: 1, source: 'fitted: tungsten carbide to glass (check D4), at its physical limit' },
+  lipRadius: {
+    min: 2,
+    max: 3,
+    source:
+      'fitted: roughness of hard metal (check D12), the middle of the reach of pile-up round indents, from memory',
+  },
   toolPlasticShare: { min: 0.005, max: 0.03, source: 'fitted: tool wear ratios (check D5)' },
   toolHardening: { min: 1.3, max: 2, source: 'assumed: work-hardened, grit-filled face' },
   toolHardeningLimit: { min: 3e9, max: 5e9, source: 'assumed: hardened steel and carbide do not harden further' },

@@ -102,7 +102,7 @@ export function contactRow(rows: ContactRows, k: number): Float64Array {
 
 function fillTerms(row: Float64Array, i: number, hit: GritContact, rows: ContactRows): void {
   const { crater, conditions } = rows;
-  const { chipYield, plasticShare } = conditions.constants;
+  const { chipYield, plasticShare, lipRadius } = conditions.constants;
   const share = rows.yields[i] as number;
   const leaving = chipYield * share;
   const probability = leaving * chipProbability(crater, hit.load);
@@ -115,8 +115,9 @@ function fillTerms(row: Float64Array, i: number, hit: GritContact, rows: Contact
   row[at + TERM.chipDepth] = probability * chipDepth(crater, hit.load);
   row[at + TERM.chipRadius] = leaving * tabulatedRadius(rows, hit.load);
   row[at + TERM.dent] = dent;
-  // what leaves of a dent lowers its contact area pi a^2 = P / H as a paraboloid, twice the mean depth in the middle
-  const lowered = hit.load > 0 ? (2 * plasticShare * hit.workDent * conditions.work.hardness) / hit.load : 0;
+  // the lips of a dent lower lipRadius^2 times its contact area pi a^2 = P / H, as a paraboloid twice the mean depth
+  const perArea = (2 * conditions.work.hardness) / (lipRadius * lipRadius);
+  const lowered = hit.load > 0 ? (perArea * plasticShare * hit.workDent) / hit.load : 0;
   row[at + TERM.dentDepth] = dent * lowered;
   row[at + TERM.toolDent] = hit.toolDent;
   row[at + TERM.crushRatio] = hit.uncappedLoad / (rows.crushLoads[i] as number);

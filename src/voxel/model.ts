@@ -179,7 +179,7 @@ function typicalChip(conditions: Conditions, gap: number): { radius: number; dep
     radius += share * chip.radius;
     depth += share * chip.depth;
     dents += share;
-    dentRadius += share * Math.sqrt(out.load / (Math.PI * conditions.work.hardness));
+    dentRadius += share * conditions.constants.lipRadius * Math.sqrt(out.load / (Math.PI * conditions.work.hardness));
   });
   // purely plastic work has no chips to resolve: its dents set the scale
   if (weight < 1e-3 * dents) return { radius: dents > 0 ? dentRadius / dents : gap / 10, depth: 0 };

@@ -46,7 +46,7 @@ export function buildTables(conditions: Conditions, setting: TableSetting): CutT
   coefficients[COEFFICIENT.edgeRadius] = setting.edgeRadius;
   coefficients[COEFFICIENT.radius] = crater.radius;
   coefficients[COEFFICIENT.depth] = crater.depth;
-  coefficients[COEFFICIENT.dentRadius] = 1 / Math.sqrt(Math.PI * work.hardness);
+  coefficients[COEFFICIENT.dentRadius] = constants.lipRadius / Math.sqrt(Math.PI * work.hardness);
   coefficients[COEFFICIENT.chipLoad] = constants.edgeChip * work.toughness;
   coefficients[COEFFICIENT.chipBreadth] = constants.chipBreadthRatio;
   coefficients[COEFFICIENT.useful] = 1;

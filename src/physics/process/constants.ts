@@ -27,7 +27,7 @@ export const slurryConstants: SlurryConstants = {
   exchangeReynolds: 20,
   shielding: 0.2,
   finesYield: 1,
-  debrisBulking: 14,
+  debrisBulking: 16,
 };
 
 export const slurryNotes: Record<keyof SlurryConstants, ConstantNote> = {

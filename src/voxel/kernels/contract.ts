@@ -117,7 +117,7 @@ export const COEFFICIENT = {
   radius: 2,
   /** b = depth P^(1/2). */
   depth: 3,
-  /** Contact radius of a dent = dentRadius P^(1/2). */
+  /** Reach of a dent with its lips = dentRadius P^(1/2). */
   dentRadius: 4,
   /** Load that chips the rim = chipLoad z^(3/2) times the site's factor. */
   chipLoad: 5,
