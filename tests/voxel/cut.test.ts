@@ -68,9 +68,9 @@ describe('cut and estimate agree on the steady flat floor: rate and engaged grai
         expect(Math.abs(cut.rate / mean.rate - 1)).toBeLessThan(0.2);
         expect(Math.abs(cut.engaged / mean.engaged - 1)).toBeLessThan(0.2);
         expect(Math.abs(cut.sa / mean.floorRa - 1)).toBeLessThan(0.25);
-        // the overlap is produced by the cut, not put in
+        // the overlap is produced by the cut, not put in; above one where shallow chips shear off taller peaks
         expect(cut.overlap).toBeGreaterThan(0.5);
-        expect(cut.overlap).toBeLessThan(1);
+        expect(cut.overlap).toBeLessThan(1.2);
       });
     }
   }
