@@ -48,6 +48,7 @@ const toolRecord = record({
   tensileStrengthMPa: property,
   fatigueStrengthMPa: property,
   strainLimit: property.optional(),
+  fractureStrain: property.optional(),
 });
 
 const abrasiveRecord = record({
@@ -232,6 +233,7 @@ export function toolMaterialOf(record: ToolRecord): ToolMaterial {
     fatigueStrength: p.fatigueStrengthMPa.nominal * PASCALS_PER_MEGAPASCAL,
     metal: record.class === 'metal',
     ...(p.strainLimit ? { strainLimit: p.strainLimit.nominal } : {}),
+    ...(p.fractureStrain ? { fractureStrain: p.fractureStrain.nominal } : {}),
   };
 }
 

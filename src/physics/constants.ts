@@ -184,7 +184,12 @@ export const constantNotes: Record<keyof ProcessConstants, ConstantNote> = {
     max: 4,
     source: 'fitted with the scatter; at 0.5 and 4 the chips are four to seven grain sizes',
   },
-  wallRenewal: { min: 0.01, max: 0.1, source: 'assumed until the slurry balance gives it' },
+  wallRenewal: {
+    min: 0.01,
+    max: 0.1,
+    source:
+      'assumed: share of first squeezes in clear water at the reference setting; flow, viscosity and debris move it',
+  },
   wallFoot: {
     min: 1.3,
     max: 1.8,

@@ -24,6 +24,8 @@ export interface ToolMaterial {
   readonly fatigueStrength: number;
   /** Largest working strain where practice sets one instead of the fatigue strength (titanium: 0.0025). */
   readonly strainLimit?: number;
+  /** True strain at fracture in tension, ln(1 / (1 - reduction of area)); the ductility of the fitted mild steel if absent. */
+  readonly fractureStrain?: number;
   readonly metal: boolean;
 }
 

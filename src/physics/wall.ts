@@ -41,9 +41,10 @@ export interface WallLaw {
   readonly largestOverlap: number;
   readonly shortest: number;
   readonly longest: number;
-  /** Load (N) and removed volume (m3) of a hit, diameters x overlaps, overlap fastest. */
+  /** Load (N), removed volume (m3) and dent in the tool's side (m3) of a hit, diameters x overlaps, overlap fastest. */
   readonly loads: Float64Array;
   readonly volumes: Float64Array;
+  readonly toolDents: Float64Array;
   /** Number density of grains, equally spaced from `shortest` to `longest` (1/m). */
   readonly density: Float64Array;
   /** Gap (m) and the exposure after which it is reached (s), both rising; the last exposure may be infinite. */
@@ -69,8 +70,9 @@ function scatteredRunouts(
 /**
  * Builds the side gap's law.
  * @param runout lateral run-out of the tool, zero-to-peak (m); 0 leaves the wall at its foot
+ * @param freshness share of the squeezes that are first ones, from `wallFreshness`; in clear water if left out
  */
-export function wallLaw(conditions: Conditions, runout: number): WallLaw {
+export function wallLaw(conditions: Conditions, runout: number, freshness = conditions.constants.wallRenewal): WallLaw {
   const { grit, constants, concentration } = conditions;
   const foot = constants.wallFoot * grit.massMedian;
   const { runouts, chances } = scatteredRunouts(runout, constants.runoutScatter, constants.runoutCap);
@@ -87,7 +89,7 @@ export function wallLaw(conditions: Conditions, runout: number): WallLaw {
     widest: Math.max(foot, longest + reach),
     runouts,
     chances,
-    grainsPerVolume: (6 * concentration * constants.wallRenewal) / (PI * d30 * d30 * d30),
+    grainsPerVolume: (6 * concentration * freshness) / (PI * d30 * d30 * d30),
     largestOverlap: 2 * reach,
     shortest,
     longest,
@@ -102,12 +104,13 @@ function hitTables(
   largestOverlap: number,
   shortest: number,
   longest: number,
-): Pick<WallLaw, 'loads' | 'volumes'> {
+): Pick<WallLaw, 'loads' | 'volumes' | 'toolDents'> {
   const { chipYield, plasticShare } = conditions.constants;
   const law = contactLaw(conditions);
   const crater = craterLaw(conditions.work, conditions.constants);
   const loads = new Float64Array(DIAMETERS * OVERLAPS);
   const volumes = new Float64Array(DIAMETERS * OVERLAPS);
+  const toolDents = new Float64Array(DIAMETERS * OVERLAPS);
   const hit = emptyContact();
   for (let i = 0; i < DIAMETERS; i++) {
     const d = shortest + ((longest - shortest) * i) / (DIAMETERS - 1);
@@ -116,9 +119,10 @@ function hitTables(
       contact(law, d, (largestOverlap * j) / (OVERLAPS - 1), hit);
       loads[i * OVERLAPS + j] = hit.load;
       volumes[i * OVERLAPS + j] = share * (chipYield * meanChipVolume(crater, hit.load) + plasticShare * hit.workDent);
+      toolDents[i * OVERLAPS + j] = hit.toolDent;
     }
   }
-  return { loads, volumes };
+  return { loads, volumes, toolDents };
 }
 
 type Tables = Omit<WallLaw, 'gaps' | 'exposures'>;
@@ -159,13 +163,24 @@ function fromTable(law: Tables, table: Float64Array, d: number, overlap: number)
   return (1 - u) * near + u * far;
 }
 
-/** Speed at which a side gap w widens (m/s). */
-export function wallRate(law: Tables, gap: number): number {
+/** Speed of one side of the gap w under one hit table (m/s): volume per area and cycle, times cycles. */
+function speedOf(law: Tables, table: Float64Array, gap: number): number {
+  if (!(law.largestOverlap > 0)) return 0;
   let volume = 0;
   forSqueezes(law, gap, (count, d, overlap) => {
-    volume += count * fromTable(law, law.volumes, d, overlap);
+    volume += count * fromTable(law, table, d, overlap);
   });
   return law.conditions.frequency * volume;
+}
+
+/** Speed at which a side gap w widens by loss of work (m/s). */
+export function wallRate(law: Tables, gap: number): number {
+  return speedOf(law, law.volumes, gap);
+}
+
+/** Dent volume made in the tool's side per area and time where the side gap is w (m/s). */
+export function sideDents(law: WallLaw, gap: number): number {
+  return speedOf(law, law.toolDents, gap);
 }
 
 /** The gap as a function of exposure: dt = dw / rate, exponential between table entries. */
