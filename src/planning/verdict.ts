@@ -1,4 +1,4 @@
-import type { Figure } from './figures.ts';
+import { elementsOf, type Figure } from './figures.ts';
 
 export type LimitState = 'meets' | 'at risk' | 'misses';
 
@@ -31,16 +31,12 @@ export interface Verdict {
   readonly limits: readonly LimitVerdict[];
 }
 
-const RANK: Readonly<Record<LimitState, number>> = { meets: 0, 'at risk': 1, misses: 2 };
+/** States from the best, 0, to the worst. */
+export const RANK: Readonly<Record<LimitState, number>> = { meets: 0, 'at risk': 1, misses: 2 };
 
 function at(bound: Bound, index: number): number | undefined {
   if (bound === null || typeof bound === 'number') return bound ?? undefined;
   return bound[index] ?? undefined;
-}
-
-function listOf(value: Figure['value']): readonly number[] {
-  if (value === null) return [];
-  return typeof value === 'number' ? [value] : value;
 }
 
 /** Whether all of the band from low to high is within the bounds, none of it, or some. */
@@ -57,19 +53,24 @@ function marginOf(value: number, lower: number | undefined, upper: number | unde
   return lower === undefined ? Infinity : (value - lower) / (Math.abs(lower) || 1);
 }
 
+/** Ends of an element's band: the value twice where there is none, infinite where it is open. */
+export function bandAt(figure: Figure, index: number, value: number): { readonly low: number; readonly high: number } {
+  if (figure.low === null && figure.high === null) return { low: value, high: value };
+  return { low: at(figure.low, index) ?? -Infinity, high: at(figure.high, index) ?? Infinity };
+}
+
 /**
  * Judges one limit. Meets when the whole band is inside (its ends included), misses when none of it is, at risk
  * otherwise; without a band the value alone decides; without a value it is at risk. Of several sizes the worst counts.
  */
 export function judgeLimit({ id, figure, lower, upper }: LimitRow): LimitVerdict {
-  const values = listOf(figure.value);
+  const values = elementsOf(figure.value);
   let state: LimitState = 'meets';
   let margin = Infinity;
   values.forEach((value, index) => {
     const least = at(lower, index);
     const most = at(upper, index);
-    const low = at(figure.low, index) ?? value;
-    const high = at(figure.high, index) ?? value;
+    const { low, high } = bandAt(figure, index, value);
     const own = stateOf(low, high, least ?? -Infinity, most ?? Infinity);
     if (RANK[own] > RANK[state]) state = own;
     margin = Math.min(margin, marginOf(value, least, most));
@@ -81,6 +82,35 @@ export function judgeLimit({ id, figure, lower, upper }: LimitRow): LimitVerdict
     state: known ? state : 'at risk',
     margin: known && Number.isFinite(margin) ? margin : null,
   };
+}
+
+/** How much room a figure has at the element where it has least, as `LimitVerdict.margin`, of the value and of its band. */
+export interface Room {
+  readonly element: number;
+  readonly value: number;
+  /** Of the end of the band that is nearer to its bound or further beyond it. */
+  readonly band: number;
+}
+
+/** Room of a limit's figure; null without a value or a bound. */
+export function roomOf({ figure, lower, upper }: LimitRow): Room | null {
+  let worst: Room | null = null;
+  for (const [element, value] of elementsOf(figure.value).entries()) {
+    const least = at(lower, element);
+    const most = at(upper, element);
+    if (!Number.isFinite(value)) return null;
+    if (least === undefined && most === undefined) continue;
+    const { low, high } = bandAt(figure, element, value);
+    const band = Math.min(marginOf(low, least, most), marginOf(high, least, most));
+    const own = { element, value: marginOf(value, least, most), band };
+    if (worst === null || own.band < worst.band || (own.band === worst.band && own.value < worst.value)) worst = own;
+  }
+  return worst;
+}
+
+/** The bounds of one element; undefined where there is none. */
+export function boundsAt({ lower, upper }: Pick<LimitRow, 'lower' | 'upper'>, element: number) {
+  return { lower: at(lower, element), upper: at(upper, element) };
 }
 
 /** Judges every limit; overall is the worst of them, and "not judged" when there is none. */
