@@ -8,6 +8,8 @@ const FEWEST_OF_LOOP = 12;
 const REFINED = 3;
 /** Cosine of 150 degrees: two contacts nearer to each other, as the ball's middle sees them, are the sides of a corner. */
 const OPPOSITE = -0.8660254037844386;
+/** Balls of this radius (m) and less are the rounding of a point at a corner, and held by nothing. */
+const ROUNDING = 1e-10;
 /** Share of the radius below which a ball counts as free of the outline. */
 const FREE = 1e-9;
 const ROUNDS = 40;
@@ -41,7 +43,7 @@ function touchingBall(outline: Outline, s: number, side: number): Ball {
     if (smaller >= radius * (1 - FREE)) break;
     radius = smaller;
     // cosine of the angle between the two contacts, from chord^2 = 2 r^2 (1 - cos)
-    across = 1 - (dx * dx + dy * dy) / (2 * radius * radius) <= OPPOSITE;
+    across = radius > ROUNDING && 1 - (dx * dx + dy * dy) / (2 * radius * radius) <= OPPOSITE;
   }
   return { radius, across };
 }

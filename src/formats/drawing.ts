@@ -3,7 +3,8 @@ import { nominalSizes } from '#src/base/outline.ts';
 import { METRES_PER_MICROMETRE, METRES_PER_MILLIMETRE, MILLIMETRES_PER_METRE } from '#src/base/units.ts';
 import type { FigureName, Figures } from '#src/planning/figures.ts';
 import { headline, judgeLimits, type LimitRow, type LimitWords, summary, type Verdict } from '#src/planning/verdict.ts';
-import { outlineSpecOf } from './job/outline-file.ts';
+import { emptyDesk } from './job/desk.ts';
+import { readOutline } from './job/outline-input.ts';
 import type { JobFile } from './job/schema.ts';
 import { roundSignificant } from './numbers.ts';
 
@@ -42,8 +43,19 @@ function entryRow(spec: OutlineSpec, limits: NonNullable<JobFile['cavity']['limi
   return [{ id: 'entrySizeMm', figure: figures.entrySizeMm, lower, upper }];
 }
 
-/** The limits of a job's drawing beside the figures they are held against, in the figures' units, in drawing order. */
-export function limitRows({ cavity }: JobFile, figures: Figures): LimitRow[] {
+/** The cavity of a job whose outline stands in the job itself. @throws RangeError when it does not, or is not sound */
+function cavityOf({ cavity }: JobFile): OutlineSpec {
+  const read = readOutline(emptyDesk(), 'cavity.outline', cavity.outline);
+  if (!read) throw new RangeError('the outline of the cavity is not in the job: hand it in');
+  return read.outline.spec;
+}
+
+/**
+ * The limits of a job's drawing beside the figures they are held against, in the figures' units, in drawing order.
+ * @param spec the cavity's outline; needed where it is drawn in a file of its own
+ */
+export function limitRows(job: JobFile, figures: Figures, spec: OutlineSpec = cavityOf(job)): LimitRow[] {
+  const { cavity } = job;
   const limits = cavity.limits ?? {};
   const most = (id: FigureName, upper: number | undefined): LimitRow[] =>
     upper === undefined ? [] : [{ id, figure: figures[id], lower: null, upper }];
@@ -52,7 +64,7 @@ export function limitRows({ cavity }: JobFile, figures: Figures): LimitRow[] {
       ? undefined
       : roundSignificant((limits.cornerRadiusMm * METRES_PER_MILLIMETRE) / METRES_PER_MICROMETRE, 12);
   return [
-    ...entryRow(outlineSpecOf(cavity.outline), limits, figures),
+    ...entryRow(spec, limits, figures),
     ...most('taperDeg', limits.taperDeg),
     ...most('floorFlatnessUm', limits.floorFlatnessUm),
     ...most('cornerRadiusUm', radiusUm),
@@ -66,9 +78,12 @@ export function limitRows({ cavity }: JobFile, figures: Figures): LimitRow[] {
   ];
 }
 
-/** The verdict on a job's figures: every limit of its drawing, and the stall margin where it is known. */
-export function judgeDrawing(job: JobFile, figures: Figures): Verdict {
-  return judgeLimits(limitRows(job, figures));
+/**
+ * The verdict on a job's figures: every limit of its drawing, and the stall margin where it is known.
+ * @param spec the cavity's outline; needed where it is drawn in a file of its own
+ */
+export function judgeDrawing(job: JobFile, figures: Figures, spec?: OutlineSpec): Verdict {
+  return judgeLimits(limitRows(job, figures, spec));
 }
 
 /** The verdict in one line, in the words of the drawing. */

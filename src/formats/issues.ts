@@ -3,18 +3,11 @@ import { nearestName } from './nearest.ts';
 import type { Problem } from './problems.ts';
 import { z } from './zod.ts';
 
-/** What to say of fields and values that a schema does not hold yet. */
-export interface Later {
-  readonly fields: Readonly<Record<string, string>>;
-  readonly values: Readonly<Record<string, Readonly<Record<string, string>>>>;
-}
-
-/** What stands around an issue: the schema, the value read, the places in its text, what comes later. */
+/** What stands around an issue: the schema, the value read, the places in its text. */
 export interface IssueContext {
   readonly schema: z.ZodType;
   readonly value: unknown;
   readonly places: ReadonlyMap<string, Place>;
-  readonly later: Later;
 }
 
 type Issue = z.core.$ZodIssue;
@@ -63,6 +56,7 @@ export function schemaAt(schema: z.ZodType, value: unknown, path: readonly Prope
     }
     if (field instanceof z.ZodObject) field = unwrap(field.shape[String(key)]);
     else if (field instanceof z.ZodArray) field = unwrap(field.element);
+    else if (field instanceof z.ZodTuple) field = unwrap(field.def.items[Number(key)]);
     else if (field instanceof z.ZodRecord) field = unwrap(field.valueType);
     else return undefined;
     current = valueAt(current, [key]);
@@ -89,7 +83,12 @@ export function allowedText(schema: z.core.$ZodType | undefined): string {
   if (field instanceof z.ZodLiteral) return [...field.values].map(String).join(', ');
   if (field instanceof z.ZodString)
     return field.maxLength === null ? 'text' : `text of at most ${field.maxLength} characters`;
-  if (field instanceof z.ZodArray) return 'a list in square brackets';
+  if (field instanceof z.ZodTuple) return `a list of ${field.def.items.length} in square brackets`;
+  if (field instanceof z.ZodArray) {
+    const { minimum, maximum } = field._zod.bag as { readonly minimum?: number; readonly maximum?: number };
+    const counted = minimum !== undefined && maximum !== undefined && maximum < 1e9;
+    return counted ? `a list of ${minimum} to ${maximum} in square brackets` : 'a list in square brackets';
+  }
   if (field instanceof z.ZodDiscriminatedUnion) return `one of the kinds ${kindsOf(field).join(', ')}`;
   if (field instanceof z.ZodUnion)
     return field.options.map((member) => allowedText(member as z.core.$ZodType)).join('; or ');
@@ -114,6 +113,7 @@ function pathsByName(
   if (field instanceof z.ZodUnion) {
     for (const member of field.options) pathsByName(member as z.core.$ZodType, base, into);
   }
+  if (field instanceof z.ZodArray) pathsByName(field.element, `${base}[]`, into);
   if (!(field instanceof z.ZodObject)) return into;
   for (const [name, inner] of Object.entries(field.shape)) {
     const path = base === '' ? name : `${base}.${name}`;
@@ -121,6 +121,15 @@ function pathsByName(
     pathsByName(inner as z.core.$ZodType, path, into);
   }
   return into;
+}
+
+const knownNames = new WeakMap<z.ZodType, ReadonlyMap<string, string>>();
+
+/** `pathsByName` of a schema, kept: schemas do not change. */
+function namesOf(schema: z.ZodType): ReadonlyMap<string, string> {
+  const names = knownNames.get(schema) ?? pathsByName(schema);
+  knownNames.set(schema, names);
+  return names;
 }
 
 /** A context with every name of its schema. */
@@ -143,8 +152,6 @@ function problem(context: IssueContext, path: readonly PropertyKey[], message: s
 
 function unknownField(context: NamedContext, parent: readonly PropertyKey[], key: string): Problem {
   const path = [...parent, key];
-  const later = own(context.later.fields, pathText(path));
-  if (later !== undefined) return problem(context, path, later, 'nothing yet');
   const field = schemaAt(context.schema, context.value, parent);
   const shape = field instanceof z.ZodUnion ? unwrap(memberFor(field, valueAt(context.value, parent))) : field;
   const known = shape instanceof z.ZodObject ? Object.keys(shape.shape) : [];
@@ -157,11 +164,6 @@ function unknownField(context: NamedContext, parent: readonly PropertyKey[], key
   if (near !== undefined) return say(`Did you mean ${near}?`);
   const far = nearestName(key, elsewhere.keys());
   return say(far === undefined ? 'Take it out.' : `Did you mean ${elsewhere.get(far)}?`);
-}
-
-/** An own field of a record; what a name inherits does not count. */
-function own<T>(record: Readonly<Record<string, T>>, key: string): T | undefined {
-  return Object.hasOwn(record, key) ? record[key] : undefined;
 }
 
 function kindOf(value: unknown): string {
@@ -180,13 +182,12 @@ function wrongValue(context: IssueContext, issue: Issue): Problem {
   const { title } = metaOf(field);
   const name = title ?? (pathText(issue.path) || 'The whole file');
   const say = (message: string) => problem(context, issue.path, message, allowed);
-  const later = own(own(context.later.values, pathText(issue.path)) ?? {}, String(value));
-  if (later !== undefined) return say(later);
   if (value === undefined) return say(`${name} is missing. Add it.`);
   if (typeof value === 'number' && !Number.isFinite(value)) return say(`${name} must be a finite number.`);
   if (issue.code === 'too_small' || issue.code === 'too_big') {
     const bound = issue.code === 'too_small' ? `below ${issue.minimum}` : `above ${issue.maximum}`;
     if (typeof value === 'string') return say(`${name} is too ${issue.code === 'too_big' ? 'long' : 'short'}.`);
+    if (Array.isArray(value)) return say(`${name} has too ${issue.code === 'too_big' ? 'many' : 'few'} items.`);
     return say(`${name} is ${bound}. Enter a value in the allowed range.`);
   }
   if (field instanceof z.ZodNumber && typeof value === 'number') return say(`${name} must be a whole number.`);
@@ -221,7 +222,7 @@ function unknownFields(context: NamedContext, parent: readonly PropertyKey[], ke
 
 /** Turns what the schema library reports into problems, each with path, value, allowed range and what to do. */
 export function problemsOf(issues: readonly Issue[], context: IssueContext): Problem[] {
-  return explain(issues, { ...context, names: pathsByName(context.schema) });
+  return explain(issues, { ...context, names: namesOf(context.schema) });
 }
 
 function explain(issues: readonly Issue[], context: NamedContext): Problem[] {
@@ -237,6 +238,7 @@ function explain(issues: readonly Issue[], context: NamedContext): Problem[] {
       );
     }
     if (issue.code === 'custom') return [problem(context, issue.path, issue.message, '')];
+    if (issue.code === 'invalid_format') return [problem(context, issue.path, issue.message, 'a plain name')];
     return [wrongValue(context, issue)];
   });
 }

@@ -27,6 +27,12 @@ const verdict = z.strictObject({
       margin: number.nullable(),
     }),
   ),
+  help: z.string().min(1).nullable(),
+});
+
+const influence = z.strictObject({
+  figure: z.string().min(1),
+  inputs: z.array(z.strictObject({ name: z.string().min(1), coefficient: number, firstOrder: number })),
 });
 
 const warning = z.strictObject({ path: z.string(), message: z.string().min(1) });
@@ -39,8 +45,10 @@ export const resultSchema = z.strictObject({
   spallwright: z.literal(RESULT_VERSION),
   job: jobSchema,
   figures,
-  passes: z.array(z.strictObject({ figures })).min(1),
+  passes: z.array(z.strictObject({ title: z.string().min(1), figures })).min(1),
   verdict,
+  influences: z.array(influence),
+  modelError: z.string().min(1),
   warnings: z.array(warning),
   version: z.string().min(1),
   seed: z.int().min(0).max(4294967295),
@@ -54,14 +62,30 @@ export interface ResultWarning {
   readonly message: string;
 }
 
+/** The properties that move one figure most. */
+export interface FigureInfluences {
+  readonly figure: string;
+  readonly inputs: readonly {
+    readonly name: string;
+    /** Rank regression coefficient, -1 to 1, and the share of the figure's variance this property alone carries. */
+    readonly coefficient: number;
+    readonly firstOrder: number;
+  }[];
+}
+
 /** What a cut or an estimate comes to. */
 export interface Result {
   readonly spallwright: typeof RESULT_VERSION;
   /** The job as it was given. */
   readonly job: JobFile;
   readonly figures: Figures;
-  readonly passes: readonly { readonly figures: Figures }[];
-  readonly verdict: Verdict;
+  readonly passes: readonly { readonly title: string; readonly figures: Figures }[];
+  /** With what limits the job and what would help, in a sentence; null where there is nothing to say. */
+  readonly verdict: Verdict & { readonly help: string | null };
+  /** What moves each figure that has a band, strongest first. */
+  readonly influences: readonly FigureInfluences[];
+  /** How far the model was from published measurements, in a sentence: the bands do not cover it. */
+  readonly modelError: string;
   readonly warnings: readonly ResultWarning[];
   /** Version of the program. */
   readonly version: string;
@@ -74,6 +98,7 @@ export interface Result {
 
 /** Significant digits of a result's figures and margins. */
 const DIGITS = 6;
+const INFLUENCE_DIGITS = 3;
 
 function rounded(value: Figure['value']): Figure['value'] {
   if (value === null) return null;
@@ -99,8 +124,16 @@ export function roundedResult(result: Result): Result {
   return {
     ...result,
     figures: roundedFigures(result.figures),
-    passes: result.passes.map((pass) => ({ figures: roundedFigures(pass.figures) })),
+    passes: result.passes.map((pass) => ({ title: pass.title, figures: roundedFigures(pass.figures) })),
     verdict: { ...result.verdict, limits },
+    influences: result.influences.map(({ figure, inputs }) => ({
+      figure,
+      inputs: inputs.map(({ name, coefficient, firstOrder }) => ({
+        name,
+        coefficient: roundSignificant(coefficient, INFLUENCE_DIGITS),
+        firstOrder: roundSignificant(firstOrder, INFLUENCE_DIGITS),
+      })),
+    })),
     voxelUm: result.voxelUm === null ? null : roundSignificant(result.voxelUm, DIGITS),
     magnification: roundSignificant(result.magnification, DIGITS),
   };
@@ -126,7 +159,7 @@ export function readResult(text: string): ReadResult {
   if (!read.value) return { problems: read.problems };
   const value = read.value.json;
   const parsed = resultSchema.safeParse(value);
-  const context: IssueContext = { schema: resultSchema, value, places: read.places, later: { fields: {}, values: {} } };
+  const context: IssueContext = { schema: resultSchema, value, places: read.places };
   const problems = [...read.problems, ...(parsed.success ? [] : problemsOf(parsed.error.issues, context))];
   return parsed.success && problems.length === 0 ? { result: parsed.data } : { problems };
 }

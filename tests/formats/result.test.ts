@@ -19,14 +19,24 @@ const result: Result = {
     entrySizeMm: plainFigure([4.0012345678, 2.5]),
     stallMargin: plainFigure(null, 'no stall load is known'),
   },
-  passes: [{ figures: everyFigure((index) => ({ value: index, low: index - 1, high: index + 1, covers: 'all' })) }],
+  passes: [
+    {
+      title: 'roughing',
+      figures: everyFigure((index) => ({ value: index, low: index - 1, high: index + 1, covers: 'all' })),
+    },
+  ],
   verdict: {
     overall: 'at risk',
     limits: [
       { id: 'taperDeg', limit: { lower: null, upper: 0.5 }, state: 'at risk', margin: 1 / 3 },
       { id: 'entrySizeMm', limit: { lower: [3.99, null], upper: [4.05, 2.55] }, state: 'meets', margin: null },
     ],
+    help: 'Taper is the limiting figure.',
   },
+  influences: [
+    { figure: 'taperDeg', inputs: [{ name: 'toughness of the work', coefficient: -0.61, firstOrder: 0.3 }] },
+  ],
+  modelError: 'Within a factor of two.',
   warnings: [{ path: 'machine.amplitudeUm', message: 'High.' }],
   version: '0.1.0',
   seed: 1,
@@ -60,7 +70,7 @@ describe('a result file', () => {
     const spoilt = {
       ...result,
       figures: { ...figures, timeMin: { value: 'x', low: null, high: null, covers: 'all' } },
-      verdict: { overall: 'fine', limits: [] },
+      verdict: { overall: 'fine', limits: [], help: null },
       seed: -1,
       extra: 1,
       job: { ...result.job, cavity: { ...result.job.cavity, depthMm: 0 } },

@@ -1,8 +1,8 @@
-import { smallestFeature } from '#src/base/outline.ts';
 import { METRES_PER_MICROMETRE, MICROMETRES_PER_METRE } from '#src/base/units.ts';
 import { formatNumber } from '../numbers.ts';
 import type { Problem } from '../problems.ts';
 import type { Draft } from './draft.ts';
+import { featureOf } from './fit.ts';
 
 /** Memory one cut may take (bytes). */
 const MEMORY = 2e9;
@@ -15,10 +15,12 @@ const BYTES_PER_COLUMN = 4 * 4 + 0.25 + (2 * 512 * 3) / 64;
 const FEWEST_ACROSS = 8;
 
 /** Surface that columns stand on: the floor's bounding rectangle, and the walls (m2). */
-function surface({ cavity, depth = 0, overcut = 0 }: Draft): number {
+function surface({ cavity, depth = 0, passes }: Draft): number {
   if (!cavity) return 0;
-  const { xMin, xMax, yMin, yMax } = cavity.bounds;
-  return (xMax - xMin + 4 * overcut) * (yMax - yMin + 4 * overcut) + cavity.perimeter * depth;
+  const { bounds, perimeter } = cavity.outline;
+  const overcut = passes.reduce((largest, pass) => Math.max(largest, pass.overcut ?? 0), 0);
+  const { xMin, xMax, yMin, yMax } = bounds;
+  return (xMax - xMin + 4 * overcut) * (yMax - yMin + 4 * overcut) + perimeter * depth;
 }
 
 /** The smallest voxel that fits into memory, rounded up to two digits (um). */
@@ -29,27 +31,19 @@ export function smallestVoxelUm(draft: Draft): number {
   return Number((Math.ceil(exact / unit - 1e-9) * unit).toPrecision(2));
 }
 
-/** Checks how the cut is to be computed: voxel against memory and features, and what this version does. */
+/** Checks how the cut is to be computed: voxel against memory and features. */
 export function checkCut(draft: Draft): Problem[] {
-  const { voxelUm, quality, replicates } = draft.job.cut ?? {};
+  const { voxelUm, quality } = draft.job.cut ?? {};
   const found: Problem[] = [];
   const refuse = (path: string, value: unknown, allowed: string, message: string) =>
     found.push({ path, value, allowed, message, severity: 'refuse' });
-  if (replicates !== undefined && replicates > 1) {
-    refuse(
-      'cut.replicates',
-      replicates,
-      '1',
-      'This version makes one cut of a job. Enter 1, or cut again with another seed.',
-    );
-  }
   if (voxelUm === undefined) return found;
   if (quality !== undefined) {
     refuse('cut.quality', quality, 'nothing beside voxelUm', 'A quality chooses the voxel. Keep quality or voxelUm.');
   }
   if (!draft.cavity || draft.depth === undefined) return found;
   const least = smallestVoxelUm(draft);
-  const most = Math.min(smallestFeature(draft.cavity.spec) / FEWEST_ACROSS, draft.depth) * MICROMETRES_PER_METRE;
+  const most = Math.min(featureOf(draft.cavity.outline.spec) / FEWEST_ACROSS, draft.depth) * MICROMETRES_PER_METRE;
   const allowed = `${least} to ${formatNumber(most, 3)} um`;
   if (voxelUm < least) {
     const columns = surface(draft) / (voxelUm * METRES_PER_MICROMETRE) ** 2;

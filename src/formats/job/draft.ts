@@ -1,68 +1,17 @@
-import { makeOutline, type Outline, type OutlineSpec, offsetSpec } from '#src/base/outline.ts';
-import {
-  HERTZ_PER_KILOHERTZ,
-  METRES_PER_MICROMETRE,
-  METRES_PER_MILLIMETRE,
-  METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE,
-  MICROMETRES_PER_METRE,
-} from '#src/base/units.ts';
-import { publishedConstants } from '#src/physics/constants.ts';
-import { estimateTables, pressureForRate } from '#src/physics/estimate.ts';
-import { gritLaw } from '#src/physics/grit-law.ts';
-import type { Abrasive, Conditions, ToolMaterial, WorkMaterial } from '#src/physics/records.ts';
-import type { GritSizes, Library, WorkpieceRecord } from '../library.ts';
-import { formatNumber } from '../numbers.ts';
+import { METRES_PER_MILLIMETRE } from '#src/base/units.ts';
+import type { WorkMaterial } from '#src/physics/records.ts';
+import type { Library, WorkpieceRecord } from '../library.ts';
 import type { Problem } from '../problems.ts';
-import { DEFAULT_MARGIN, DEFAULT_PRESSURE } from './defaults.ts';
-import { type Desk, orDefault, type PartialJob, refuse } from './desk.ts';
-import { abrasiveFor, gritFor, toolMaterialFor, workOf } from './matter.ts';
-import { outlineFaults, outlineSpecOf } from './outline-file.ts';
-import type { OutlineFile } from './schema.ts';
+import type { Attachments } from './attachments.ts';
+import { DEFAULT_MARGIN } from './defaults.ts';
+import { type Desk, emptyDesk, orDefault, type PartialJob, refuse } from './desk.ts';
+import { workOf } from './matter.ts';
+import { type JobOutline, readOutline } from './outline-input.ts';
+import { draftPass, type PassDraft, type PredictOvercut } from './pass-draft.ts';
+import { passViews } from './passes.ts';
+import { neighboursSchema } from './schema.ts';
 
-/**
- * Predicted overcut per side (m), for the tool's outline where the job gives none.
- * @param depth depth of the cavity (m)
- * @param runout lateral run-out of the tool (m)
- */
-export type PredictOvercut = (conditions: Conditions, depth: number, runout: number) => number;
-
-/**
- * Rule of thumb: 1.9 median grains, at most what the largest grain leaves. Found in the cut (1.7 to 2.1 d50 at the entry of
- * glass, walls that close on the largest grain plus the run-out).
- */
-export const ruleOfThumbOvercut: PredictOvercut = ({ grit }, _depth, runout) =>
-  Math.min(1.9 * grit.massMedian, grit.largest + runout);
-
-/** A job in SI as far as it could be worked out; what depends on a bad field is undefined. */
-export interface Draft {
-  readonly job: PartialJob;
-  readonly library: Library;
-  readonly work: WorkMaterial | undefined;
-  readonly workRecord: WorkpieceRecord | undefined;
-  readonly toolMaterial: ToolMaterial | undefined;
-  readonly abrasive: Abrasive | undefined;
-  readonly grit: GritSizes | undefined;
-  /** Zero-to-peak at the tool face (m). */
-  readonly amplitude: number;
-  readonly frequency: number;
-  readonly conditions: Conditions | undefined;
-  readonly cavity: Outline | undefined;
-  readonly depth: number | undefined;
-  readonly tool: Outline | undefined;
-  /** Predicted overcut per side (m). */
-  readonly overcut: number | undefined;
-  readonly edgeRadius: number;
-  readonly runout: number;
-  /** Static load (N): the one given, the default, or what the feed is expected to take. */
-  readonly staticLoad: number | undefined;
-  /** Feed of a feed-controlled machine (m/s). */
-  readonly feed: number | undefined;
-  readonly stock: Stock | undefined;
-  /** Paths of the fields that took their default. */
-  readonly defaultsUsed: readonly string[];
-  /** Found while working it out: unknown names, missing properties, outlines that contradict themselves. */
-  readonly problems: readonly Problem[];
-}
+export { type PredictOvercut, ruleOfThumbOvercut } from './pass-draft.ts';
 
 /** The block that is cut, with the middle of the cavity from the middle of its entry face (m). */
 export interface Stock {
@@ -73,150 +22,114 @@ export interface Stock {
   readonly cavityY: number;
 }
 
+/** A cavity that is there already, its middle from this one's (m). */
+export interface Neighbour {
+  readonly outline: JobOutline;
+  readonly x: number;
+  readonly y: number;
+  readonly depth: number;
+}
+
+/** What all passes of a job share, in SI; what depends on a bad field is undefined. */
+export interface JobFrame {
+  readonly job: PartialJob;
+  readonly library: Library;
+  readonly work: WorkMaterial | undefined;
+  readonly workRecord: WorkpieceRecord | undefined;
+  readonly cavity: JobOutline | undefined;
+  readonly through: boolean;
+  /** Depth as drawn; the workpiece's thickness where it goes through (m). */
+  readonly depth: number | undefined;
+  readonly stock: Stock | undefined;
+  readonly backing: boolean;
+  /** In the job's order; undefined for one that is not whole. */
+  readonly neighbours: readonly (Neighbour | undefined)[];
+}
+
+/** A job in SI as far as it could be worked out. */
+export interface Draft extends JobFrame {
+  readonly passes: readonly PassDraft[];
+  /** Paths of the fields that took their default. */
+  readonly defaultsUsed: readonly string[];
+  readonly notes: readonly string[];
+  /** Found while working it out: unknown names, missing properties, outlines that contradict themselves. */
+  readonly problems: readonly Problem[];
+}
+
+/** What working a job out needs beside it. */
+export interface DraftSettings {
+  readonly library: Library;
+  readonly predictOvercut: PredictOvercut;
+  readonly attachments: Attachments;
+}
+
 /** Works a job out in SI, as far as its fields allow. Never throws. */
-export function draftJob(job: PartialJob, library: Library, predictOvercut: PredictOvercut): Draft {
-  const desk: Desk = { problems: [], defaultsUsed: [] };
-  const { work, record: workRecord } = workOf(desk, job.workpiece ?? {}, library);
-  const toolMaterial = toolMaterialFor(desk, job, library);
-  const abrasive = abrasiveFor(desk, job, library);
-  const grit = gritFor(desk, job.slurry ?? {}, library);
-  const driven = {
-    amplitude: orDefault(desk, 'machine.amplitudeUm', job.machine?.amplitudeUm) * METRES_PER_MICROMETRE,
-    frequency: orDefault(desk, 'machine.frequencyKHz', job.machine?.frequencyKHz) * HERTZ_PER_KILOHERTZ,
-    concentration: orDefault(desk, 'slurry.concentrationVolPercent', job.slurry?.concentrationVolPercent) / 100,
-  };
-  const conditions: Conditions | undefined =
-    work && toolMaterial && abrasive && grit
-      ? { work, tool: toolMaterial, abrasive, grit: gritLaw(grit), ...driven, constants: publishedConstants }
-      : undefined;
-  for (const path of ['slurry.carrier', 'slurry.delivery', 'slurry.renewal'] as const) {
-    orDefault(desk, path, job.slurry?.[path.slice(7) as 'carrier' | 'delivery' | 'renewal']);
-  }
-  const runout = orDefault(desk, 'machine.lateralRunoutUm', job.machine?.lateralRunoutUm) * METRES_PER_MICROMETRE;
-  const depth = job.cavity?.depthMm === undefined ? undefined : job.cavity.depthMm * METRES_PER_MILLIMETRE;
-  const cavity = outlineFor(desk, 'cavity.outline', job.cavity?.outline);
-  const overcut = conditions && depth !== undefined ? predictOvercut(conditions, depth, runout) : undefined;
-  const tool = toolFor(desk, job, cavity, overcut);
-  return {
+export function draftJob(job: PartialJob, settings: DraftSettings): Draft {
+  const desk = emptyDesk(settings.attachments);
+  const { work, record: workRecord } = workOf(desk, job.workpiece ?? {}, settings.library);
+  const cavity = readOutline(desk, 'cavity.outline', job.cavity?.outline);
+  const through = job.cavity?.through === true;
+  const depth = depthOf(desk, job, through);
+  const frame: JobFrame = {
     job,
-    library,
+    library: settings.library,
     work,
     workRecord,
-    toolMaterial,
-    abrasive,
-    grit,
-    amplitude: driven.amplitude,
-    frequency: driven.frequency,
-    conditions,
     cavity,
+    through,
     depth,
-    tool,
-    overcut,
-    edgeRadius: orDefault(desk, 'tool.edgeRadiusMm', job.tool?.edgeRadiusMm) * METRES_PER_MILLIMETRE,
-    runout,
-    staticLoad: loadFor(desk, job, tool, conditions),
-    feed: feedOf(job),
     stock: stockFor(desk, job.workpiece ?? {}, cavity, depth),
-    defaultsUsed: desk.defaultsUsed,
+    backing: through && orDefault(desk, 'workpiece.backing', job.workpiece?.backing) === 'bonded',
+    neighbours: neighboursOf(desk, job),
+  };
+  const views = passViews(job);
+  const passes = views.map((view) => draftPass(frame, view, settings));
+  return {
+    ...frame,
+    passes,
+    defaultsUsed: [...new Set([...desk.defaultsUsed, ...passes.flatMap((pass) => pass.defaultsUsed)])],
+    notes: [...desk.notes, ...passes.flatMap((pass) => pass.notes)],
     problems: desk.problems,
   };
 }
 
-type PartialOutline = NonNullable<PartialJob['cavity']>['outline'];
+function depthOf(desk: Desk, job: PartialJob, through: boolean): number | undefined {
+  const given = job.cavity?.depthMm;
+  if (!through) {
+    if (given !== undefined) return given * METRES_PER_MILLIMETRE;
+    const message = 'Depth is missing. Add it, or say through: true.';
+    return refuse(desk, 'cavity.depthMm', undefined, '0.005 to 200 mm', message);
+  }
+  const thickness = job.workpiece?.thicknessMm;
+  if (thickness === undefined) {
+    const message = 'Workpiece thickness is missing, and a cavity that goes through is as deep as that. Add it.';
+    return refuse(desk, 'workpiece.thicknessMm', undefined, '0.02 to 500 mm', message);
+  }
+  if (given !== undefined && given !== thickness) {
+    const message = 'A cavity that goes through is as deep as the workpiece is thick. Take depthMm out, or through.';
+    return refuse(desk, 'cavity.depthMm', given, `nothing, or ${thickness} mm`, message);
+  }
+  return thickness * METRES_PER_MILLIMETRE;
+}
+
+function neighboursOf(desk: Desk, job: PartialJob): (Neighbour | undefined)[] {
+  const listed = (job.workpiece?.neighbours ?? []) as readonly unknown[];
+  return listed.map((file, index) => {
+    const whole = neighboursSchema.safeParse([file]).data?.[0];
+    if (!whole) return undefined;
+    const outline = readOutline(desk, `workpiece.neighbours[${index}].outline`, whole.outline);
+    const { xMm, yMm, depthMm } = whole;
+    const [x, y, depth] = [xMm, yMm, depthMm].map((mm) => mm * METRES_PER_MILLIMETRE) as [number, number, number];
+    return outline && { outline, x, y, depth };
+  });
+}
+
 type Workpiece = NonNullable<PartialJob['workpiece']>;
-
-/** Whether nothing of the outline was taken out for being wrong. */
-function isWhole(file: PartialOutline): file is OutlineFile {
-  if (file === undefined) return false;
-  const needed: Record<OutlineFile['kind'], readonly string[]> = {
-    circle: ['diameterMm'],
-    rectangle: ['lengthMm', 'widthMm'],
-    slot: ['lengthMm', 'widthMm'],
-    regularPolygon: ['sides', 'acrossFlatsMm'],
-    ring: ['outerDiameterMm', 'innerDiameterMm'],
-  };
-  const names = file.kind === undefined ? undefined : needed[file.kind];
-  return names?.every((name) => (file as Record<string, unknown>)[name] !== undefined) ?? false;
-}
-
-function outlineFor(desk: Desk, path: string, file: PartialOutline): Outline | undefined {
-  if (!isWhole(file)) return undefined;
-  const faults = outlineFaults(file);
-  for (const { field, value, allowed, message } of faults) refuse(desk, `${path}.${field}`, value, allowed, message);
-  return faults.length > 0 ? undefined : makeOutline(outlineSpecOf(file));
-}
-
-function toolFor(
-  desk: Desk,
-  job: PartialJob,
-  cavity: Outline | undefined,
-  overcut: number | undefined,
-): Outline | undefined {
-  if (job.tool?.outline !== undefined) return outlineFor(desk, 'tool.outline', job.tool.outline);
-  if (!cavity || overcut === undefined) return undefined;
-  desk.defaultsUsed.push('tool.outline');
-  const spec = insideBy(cavity.spec, overcut);
-  if (spec) return makeOutline(spec);
-  const shown = formatNumber(overcut * MICROMETRES_PER_METRE, 3);
-  const message = `Nothing is left of the tool: this grit opens the cavity by ${shown} um a side. Take a finer grit.`;
-  return refuse(
-    desk,
-    'cavity.outline',
-    job.cavity?.outline,
-    `wider than ${formatNumber(2e3 * overcut, 3)} mm`,
-    message,
-  );
-}
-
-/** The outline moved inward, or undefined when nothing is left of it. */
-export function insideBy(spec: OutlineSpec, distance: number): OutlineSpec | undefined {
-  try {
-    return offsetSpec(spec, -distance);
-  } catch {
-    return undefined;
-  }
-}
-
-function feedOf({ machine }: PartialJob): number | undefined {
-  const feed = machine?.feedMmPerMin;
-  return feed === undefined ? undefined : feed * METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE;
-}
-
-function loadFor(
-  desk: Desk,
-  job: PartialJob,
-  tool: Outline | undefined,
-  conditions: Conditions | undefined,
-): number | undefined {
-  const feed = feedOf(job);
-  const given = job.machine?.staticLoadN;
-  if (feed !== undefined && given !== undefined) {
-    const message = 'A machine is driven by a load or by a feed, not by both. Take one of the two out.';
-    return refuse(desk, 'machine.feedMmPerMin', job.machine?.feedMmPerMin, 'staticLoadN or feedMmPerMin', message);
-  }
-  if (given !== undefined) return given;
-  if (feed !== undefined) return tool && conditions && loadOfFeed(desk, job, feed, { tool, conditions });
-  desk.defaultsUsed.push('machine.staticLoadN');
-  return tool && DEFAULT_PRESSURE * tool.area;
-}
-
-/** The load fresh grit takes to sink at the feed. */
-function loadOfFeed(
-  desk: Desk,
-  job: PartialJob,
-  feed: number,
-  { tool, conditions }: { readonly tool: Outline; readonly conditions: Conditions },
-): number | undefined {
-  const pressure = pressureForRate(estimateTables(conditions), feed);
-  if (pressure !== undefined) return pressure * tool.area;
-  const message = 'No load the grits bear sinks the tool at this feed. Enter less.';
-  return refuse(desk, 'machine.feedMmPerMin', job.machine?.feedMmPerMin, 'what the grits can cut', message);
-}
 
 function stockFor(
   desk: Desk,
   workpiece: Workpiece,
-  cavity: Outline | undefined,
+  cavity: JobOutline | undefined,
   depth: number | undefined,
 ): Stock | undefined {
   const x = orDefault(desk, 'workpiece.cavityXMm', workpiece.cavityXMm) * METRES_PER_MILLIMETRE;
@@ -228,7 +141,7 @@ function stockFor(
     return otherwise;
   };
   if (!cavity || depth === undefined) return undefined;
-  const { xMin, xMax, yMin, yMax } = cavity.bounds;
+  const { xMin, xMax, yMin, yMax } = cavity.outline.bounds;
   const margin = Math.max(DEFAULT_MARGIN, depth);
   return {
     length: size('lengthMm', 2 * (Math.max(Math.abs(xMin + x), Math.abs(xMax + x)) + margin)),

@@ -135,8 +135,8 @@ export function gritFor(desk: Desk, slurry: Slurry, library: Library): GritSizes
   );
 }
 
-/** Standard normal quantile of the 3 % that exceed d3. */
-const Z_D3 = 1.8808;
+/** Standard normal quantile of the 3 % by mass that exceed d3. */
+export const Z_D3 = 1.8808;
 
 function ownGrit(desk: Desk, slurry: Slurry): GritSizes | undefined {
   const { gritMethod, d50Um = 0, spread, largestUm } = slurry;

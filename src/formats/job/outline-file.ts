@@ -1,10 +1,11 @@
-import type { OutlineSpec } from '#src/base/outline.ts';
+import { nominalSizes, type OutlineSpec, type PathSpec } from '#src/base/outline.ts';
+import type { PathLoop, PathPiece } from '#src/base/outline-path.ts';
 import { METRES_PER_MILLIMETRE, MILLIMETRES_PER_METRE } from '#src/base/units.ts';
-import { roundSignificant } from '../numbers.ts';
-import type { OutlineFile } from './schema.ts';
+import { formatNumber, roundSignificant } from '../numbers.ts';
+import type { OutlineFile, SimpleOutlineFile } from './schema.ts';
 
-/** An outline of a job file in SI. A corner radius left out is a sharp corner. */
-export function outlineSpecOf(file: OutlineFile): OutlineSpec {
+/** An outline given by its sizes, in SI. A corner radius left out is a sharp corner. */
+export function outlineSpecOf(file: SimpleOutlineFile): Exclude<OutlineSpec, PathSpec> {
   const m = METRES_PER_MILLIMETRE;
   switch (file.kind) {
     case 'circle':
@@ -32,7 +33,7 @@ export function outlineSpecOf(file: OutlineFile): OutlineSpec {
 
 const mm = (metres: number) => roundSignificant(metres * MILLIMETRES_PER_METRE, 9);
 
-/** An outline in SI as a job file has it (mm, nine digits). */
+/** An outline in SI as a job file has it (mm, nine digits); loops become path data. */
 export function outlineFileOf(spec: OutlineSpec): OutlineFile {
   switch (spec.kind) {
     case 'circle':
@@ -56,19 +57,36 @@ export function outlineFileOf(spec: OutlineSpec): OutlineFile {
     case 'ring':
       return { kind: 'ring', outerDiameterMm: mm(spec.outerDiameter), innerDiameterMm: mm(spec.innerDiameter) };
     case 'path':
-      throw new RangeError('a job file of this version has no outline drawn as a path');
+      return { kind: 'path', svgPath: spec.loops.map(pathData).join(' ') };
   }
 }
 
-/** An outline's sizes as a message shows them: "4 x 2.5 mm". */
+/** One loop as path data in millimetres, y downward. */
+function pathData({ x, y, pieces }: PathLoop): string {
+  const at = (px: number, py: number) => `${formatNumber(px * 1e3, 9)} ${formatNumber(-py * 1e3, 9)}`;
+  let from: { readonly x: number; readonly y: number } = { x, y };
+  const drawn = pieces.map((piece: PathPiece) => {
+    const chord = Math.hypot(piece.x - from.x, piece.y - from.y);
+    from = piece;
+    if (piece.kind === 'line' || piece.bulge === 0) return `L${at(piece.x, piece.y)}`;
+    const { bulge } = piece;
+    const radius = formatNumber((1e3 * chord * (1 + bulge * bulge)) / (4 * Math.abs(bulge)), 9);
+    return `A${radius} ${radius} 0 ${Math.abs(bulge) > 1 ? 1 : 0} ${bulge > 0 ? 0 : 1} ${at(piece.x, piece.y)}`;
+  });
+  return `M${at(x, y)} ${drawn.join(' ')}Z`;
+}
+
+/** An outline's sizes as a message shows them: "rectangle 4 x 2.5 mm". */
 export function outlineText(spec: OutlineSpec): string {
-  const { kind, ...sizes } = outlineFileOf(spec);
-  const parts = Object.entries(sizes).filter(([name]) => name !== 'cornerRadiusMm' && name !== 'sides');
-  return `${kind} ${parts.map(([, value]) => roundSignificant(value as number, 5)).join(' x ')} mm`;
+  const name = spec.kind === 'path' ? 'outline' : spec.kind;
+  const sizes = nominalSizes(spec).map((size) => formatNumber(size * MILLIMETRES_PER_METRE, 5));
+  return `${name} ${sizes.join(' x ')} mm`;
 }
 
 /** Where the sizes of one outline contradict each other: field, value, what is allowed, why and what to do. */
-export function outlineFaults(file: OutlineFile): { field: string; value: number; allowed: string; message: string }[] {
+export function outlineFaults(
+  file: SimpleOutlineFile,
+): { field: string; value: number; allowed: string; message: string }[] {
   const faults: { field: string; value: number; allowed: string; message: string }[] = [];
   const corner = (radiusMm: number | undefined, halfMm: number) => {
     if (radiusMm === undefined || radiusMm <= halfMm) return;

@@ -4,7 +4,6 @@ import type { Library } from '../library.ts';
 import { isRefused, type Problem, readText } from '../problems.ts';
 import { stockLibrary } from '../stock-library.ts';
 import type { PartialJob } from './desk.ts';
-import { LATER_FIELDS, LATER_VALUES } from './later.ts';
 import { examineJob, type ResolveOptions } from './resolve.ts';
 import { type JobFile, jobSchema } from './schema.ts';
 
@@ -41,14 +40,9 @@ function judge(
   before: readonly Problem[],
 ): ReadJob {
   const parsed = jobSchema.safeParse(value);
-  const context: IssueContext = {
-    schema: jobSchema,
-    value,
-    places,
-    later: { fields: LATER_FIELDS, values: LATER_VALUES },
-  };
+  const context: IssueContext = { schema: jobSchema, value, places };
   const shape = [...before, ...(parsed.success ? [] : problemsOf(parsed.error.issues, context))];
-  if (shape.some((problem) => problem.path === '')) return { problems: shape };
+  if (shape.some((problem) => problem.path === '')) return { problems: told(shape) };
   const left = parsed.success
     ? parsed.data
     : (without(value, new Set(shape.map((problem) => problem.path))) as PartialJob);
@@ -56,8 +50,18 @@ function judge(
     .problems.filter((problem) => !follows(problem, shape))
     .map((problem) => withPlace(problem, places));
   const problems = [...shape, ...together];
-  if (!parsed.success || isRefused(problems)) return { problems };
+  if (!parsed.success || isRefused(problems)) return { problems: told(problems) };
   return { job: parsed.data, warnings: problems };
+}
+
+/** Most problems told in one go. */
+const MOST_TOLD = 200;
+
+function told(problems: readonly Problem[]): readonly Problem[] {
+  const more = problems.length - MOST_TOLD;
+  if (more <= 0) return problems;
+  const message = `There are ${more} problems more. Mend these first.`;
+  return [...problems.slice(0, MOST_TOLD), { path: '', value: undefined, allowed: '', message, severity: 'refuse' }];
 }
 
 /** Fields of workpiece and slurry whose being wrong never makes another field of theirs look missing. */
@@ -67,20 +71,34 @@ const APART = new Set([
   'workpiece.thicknessMm',
   'workpiece.cavityXMm',
   'workpiece.cavityYMm',
+  'workpiece.backing',
+  'workpiece.neighbours',
   'slurry.abrasive',
   'slurry.concentrationVolPercent',
   'slurry.carrier',
+  'slurry.carrierViscosityMPaS',
   'slurry.delivery',
+  'slurry.deliveryPressureKPa',
   'slurry.renewal',
+  'slurry.sumpLitres',
+  'slurry.usedMin',
 ]);
+
+/** A path as it would be in a job without a list of passes. */
+function bare(path: string): string {
+  return path.replace(/^passes\[\d+\]\.?/, '');
+}
 
 /** Whether a problem only follows from others: it is about the same field, or misses what stands wrong beside it. */
 function follows(problem: Problem, others: readonly Problem[]): boolean {
-  const section = problem.path.split('.')[0] as string;
+  const own = bare(problem.path);
+  const section = own.split('.')[0] as string;
+  const missing = problem.value === undefined && problem.severity === 'refuse';
   return others.some(({ path }) => {
     if (path === problem.path) return true;
-    const beside = path === section || path.startsWith(`${section}.`);
-    return problem.value === undefined && problem.severity === 'refuse' && beside && !APART.has(path);
+    const other = bare(path);
+    const beside = other === '' || other === own || other === section || other.startsWith(`${section}.`);
+    return missing && beside && !APART.has(other);
   });
 }
 

@@ -1,45 +1,27 @@
 import { z } from '../zod.ts';
-import { choice, count, property, quantity, words } from './fields.ts';
+import { choice, flag, list, mm, property, quantity, um, words } from './fields.ts';
+import { outline } from './schema-outline.ts';
+import { cut, machine, slurry, tool } from './schema-sections.ts';
 
-const mm = (min: number, max: number, title: string, description: string) =>
-  quantity(min, max, 'mm', title, description);
-const um = (min: number, max: number, title: string, description: string) =>
-  quantity(min, max, 'um', title, description);
+export type { OutlineFile, SimpleOutlineFile } from './schema-outline.ts';
 
-const cornerRadius = mm(0, 500, 'Corner radius', 'Radius of the corners in plan; 0 for sharp ones.').optional();
+const neighbour = z
+  .strictObject({
+    outline: outline('Neighbour outline', 'The other cavity in plan, about its own middle.'),
+    xMm: mm(-1000, 1000, 'Neighbour position along x', "From the middle of this cavity to the other's."),
+    yMm: mm(-1000, 1000, 'Neighbour position along y', "From the middle of this cavity to the other's."),
+    depthMm: mm(0.005, 500, 'Neighbour depth', 'Depth of the other cavity.'),
+  })
+  .meta({ title: 'Neighbour', description: 'A cavity that is there already.', unit: '' });
 
-const kind = <const K extends string>(name: K) =>
-  z.literal(name).meta({ title: 'Kind', description: 'Which outline this is.', unit: '' });
-
-const circle = z.strictObject({
-  kind: kind('circle'),
-  diameterMm: mm(0.05, 300, 'Diameter', 'Diameter of the circle.'),
-});
-const rectangle = z.strictObject({
-  kind: kind('rectangle'),
-  lengthMm: mm(0.05, 500, 'Length', 'Side along x.'),
-  widthMm: mm(0.05, 500, 'Width', 'Side along y.'),
-  cornerRadiusMm: cornerRadius,
-});
-const slot = z.strictObject({
-  kind: kind('slot'),
-  lengthMm: mm(0.05, 500, 'Length', 'Over all, along x, round ends included.'),
-  widthMm: mm(0.05, 500, 'Width', 'Across, along y; the ends are half circles of this diameter.'),
-});
-const regularPolygon = z.strictObject({
-  kind: kind('regularPolygon'),
-  sides: count(3, 60, 'Sides', 'Number of equal sides.'),
-  acrossFlatsMm: mm(0.05, 300, 'Across flats', 'Twice the distance from the middle to a side.'),
-  cornerRadiusMm: cornerRadius,
-});
-const ring = z.strictObject({
-  kind: kind('ring'),
-  outerDiameterMm: mm(0.05, 300, 'Outer diameter', 'Outer diameter of the trepanned ring.'),
-  innerDiameterMm: mm(0.05, 300, 'Inner diameter', 'Diameter of the core that stays.'),
-});
-
-const outline = (title: string, description: string) =>
-  z.discriminatedUnion('kind', [circle, rectangle, slot, regularPolygon, ring]).meta({ title, description, unit: '' });
+/** Cavities that are there already. */
+export const neighboursSchema = list(
+  neighbour,
+  0,
+  100,
+  'Neighbours',
+  'Cavities that are there already, beside this one.',
+);
 
 const workpiece = z
   .strictObject({
@@ -71,6 +53,12 @@ const workpiece = z
       'Cavity position along y',
       "From the middle of the workpiece to the cavity's.",
     ).optional(),
+    backing: choice(
+      ['none', 'bonded'],
+      'Backing',
+      'What stands behind the exit face of a through-cut: nothing, or a plate bonded to it.',
+    ).optional(),
+    neighbours: neighboursSchema.optional(),
   })
   .meta({ title: 'Workpiece', description: 'What is cut: a block of one material.', unit: '' });
 
@@ -100,62 +88,32 @@ const limits = z
 const cavity = z
   .strictObject({
     outline: outline('Cavity outline', 'The cavity in plan, as drawn.'),
-    depthMm: mm(0.005, 200, 'Depth', 'Depth of the cavity, as drawn.'),
+    depthMm: mm(0.005, 200, 'Depth', 'Depth of the cavity, as drawn; without it, through.').optional(),
+    through: flag('Through', "Whether it goes through; the depth is then the workpiece's thickness.").optional(),
     limits: limits.optional(),
   })
   .meta({ title: 'Cavity', description: 'What is asked for.', unit: '' });
 
-const tool = z
-  .strictObject({
-    material: words(60, 'Tool material', 'Id of a tool material of the library, as in low_carbon_steel.').optional(),
-    outline: outline('Tool outline', 'The tool in plan; without it, the cavity less the predicted overcut.').optional(),
-    edgeRadiusMm: mm(0, 10, 'Tool edge radius', 'Radius between the face and the side of the new tool.').optional(),
-  })
-  .meta({ title: 'Tool', description: 'What is pressed in.', unit: '' });
+/** Most passes of one job. */
+const MOST_PASSES = 12;
 
-const machine = z
+const pass = z
   .strictObject({
-    frequencyKHz: quantity(10, 100, 'kHz', 'Frequency', 'Of the vibration.').optional(),
-    amplitudeUm: um(0.1, 200, 'Amplitude', 'Zero-to-peak at the tool face under load.').optional(),
-    staticLoadN: quantity(0.001, 20000, 'N', 'Static load', 'Force that presses the tool on.').optional(),
-    feedMmPerMin: quantity(
-      0.001,
-      100,
-      'mm/min',
-      'Feed',
-      'Rate a feed-controlled machine sinks at, instead of a load.',
-    ).optional(),
-    lateralRunoutUm: um(0, 50, 'Lateral run-out', 'Sideways play of the tool face.').optional(),
+    title: words(200, 'Pass title', 'What the pass is called, as in Roughing.').optional(),
+    stockUm: um(1, 20000, 'Stock', 'Work left per side and on the floor for the passes after it.').optional(),
+    depthMm: mm(0.005, 200, 'Pass depth', 'Depth this pass goes to; without it, the depth less the stock.').optional(),
+    tool: tool.optional(),
+    slurry: slurry
+      .partial()
+      .meta({ title: 'Slurry of the pass', description: 'What differs from the slurry of the job.', unit: '' })
+      .optional(),
+    machine: machine.optional(),
   })
-  .meta({ title: 'Machine', description: 'How the tool is driven.', unit: '' });
-
-const slurry = z
-  .strictObject({
-    abrasive: words(60, 'Abrasive', 'Id of an abrasive of the library, as in b4c.'),
-    grit: words(20, 'Grit', 'Grade: F4 to F2000 (FEPA, ISO 8486) or #240 to #8000 (JIS R 6001).').optional(),
-    gritMethod: choice(
-      ['photosedimentometer', 'sedimentationTube', 'electricalResistance', 'sieve'],
-      'Grading method',
-      'Table the grade is meant by; a bare F grade is by photosedimentometer or sieve, # by electrical resistance.',
-    ).optional(),
-    d50Um: um(0.2, 5000, 'Median grain', 'Median diameter by mass, instead of a grade.').optional(),
-    spread: quantity(0.02, 1.5, '', 'Spread', 'Standard deviation of the logarithm of the diameter.').optional(),
-    largestUm: um(0.3, 10000, 'Largest grain', 'Diameter no grain exceeds.').optional(),
-    concentrationVolPercent: quantity(1, 60, 'vol%', 'Concentration', 'Volume of grit in the slurry.').optional(),
-    carrier: choice(['water'], 'Carrier', 'Liquid that carries the grit.').optional(),
-    delivery: choice(['flooded'], 'Delivery', 'How the slurry comes to the tool.').optional(),
-    renewal: choice(['fresh'], 'Renewal', 'Whether the slurry is renewed.').optional(),
-  })
-  .meta({ title: 'Slurry', description: 'What does the cutting.', unit: '' });
-
-const cut = z
-  .strictObject({
-    voxelUm: um(0.05, 500, 'Voxel', 'Edge of a voxel, instead of a quality.').optional(),
-    quality: choice(['preview', 'standard', 'fine'], 'Quality', 'How finely the cut is resolved.').optional(),
-    seed: count(0, 4294967295, 'Seed', 'Start of the random numbers; the same seed gives the same cut.').optional(),
-    replicates: count(1, 1000, 'Replicates', 'How many cuts with different grits.').optional(),
-  })
-  .meta({ title: 'Cut', description: 'How the cut is computed.', unit: '' });
+  .meta({
+    title: 'Pass',
+    description: 'One setting cutting to one depth; what it leaves out is as in the job.',
+    unit: '',
+  });
 
 /** Schema version this program writes and reads. */
 export const JOB_VERSION = 1;
@@ -172,12 +130,13 @@ export const jobSchema = z.strictObject({
   tool: tool.optional(),
   machine: machine.optional(),
   slurry,
+  passes: list(pass, 1, MOST_PASSES, 'Passes', 'Settings in order, roughing first; one pass when left out.').optional(),
   cut: cut.optional(),
 });
 
 /** A job as its file has it: only what was given. */
 export type JobFile = z.infer<typeof jobSchema>;
-/** An outline as a job file has it (mm). */
-export type OutlineFile = z.infer<typeof circle | typeof rectangle | typeof slot | typeof regularPolygon | typeof ring>;
+/** One pass as a job file has it. */
+export type PassFile = z.infer<typeof pass>;
 /** The drawing's limits as a job file has them. */
 export type LimitsFile = z.infer<typeof limits>;

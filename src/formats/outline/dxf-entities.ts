@@ -39,6 +39,8 @@ const MOST_KINDS = 40;
 interface Entity {
   readonly kind: string;
   readonly line: number;
+  /** Group 8; DXF's default layer without one. */
+  layer: string;
   readonly groups: { readonly code: number; readonly number: number }[];
 }
 
@@ -133,14 +135,23 @@ class Gathering {
   units: number | undefined;
   readonly chains: Chain[] = [];
   readonly ignored = new Map<string, number>();
+  readonly #layer: string | undefined;
   #pieces = 0;
   #entity: Entity | undefined;
+
+  constructor(layer: string | undefined) {
+    this.#layer = layer?.toUpperCase();
+  }
 
   /** The entity in hand is complete. */
   end(): void {
     const entity = this.#entity;
     this.#entity = undefined;
     if (entity === undefined) return;
+    if (this.#layer !== undefined && entity.layer.toUpperCase() !== this.#layer) {
+      this.ignore(`${entity.kind} on other layers`);
+      return;
+    }
     const chain = numberOf(entity, 67, 0) === 0 ? chainOf(entity) : 'paper';
     if (chain === 'paper') this.ignore(`${entity.kind} in paper space`);
     else if (chain === undefined) this.ignore(`${entity.kind} without length`);
@@ -156,7 +167,7 @@ class Gathering {
   /** An entity starts. */
   begin({ value, line }: Group): void {
     this.end();
-    if (Object.hasOwn(READ, value)) this.#entity = { kind: value, line, groups: [] };
+    if (Object.hasOwn(READ, value)) this.#entity = { kind: value, line, layer: '0', groups: [] };
     else this.ignore(value);
   }
 
@@ -170,6 +181,7 @@ class Gathering {
   take(group: Group): void {
     const entity = this.#entity;
     if (entity === undefined) return;
+    if (group.code === 8) entity.layer = group.value;
     if (!(READ[entity.kind] as readonly number[]).includes(group.code) && !COMMON.includes(group.code)) return;
     const most = entity.kind === 'LWPOLYLINE' ? 4 * PATH_LIMITS.segments : MOST_GROUPS;
     if (entity.groups.length >= most) throw tooMany(group.line);
@@ -180,10 +192,11 @@ class Gathering {
 /**
  * Reads the header's unit and the entities of a drawing. Blocks are not read, so an INSERT is one entity passed over, however
  * much it stands for.
+ * @param layer the only layer that counts, whatever its case; all of them if left out
  * @throws Refusal
  */
-export function readDrawing(groups: Iterable<Group>): DxfDrawing {
-  const gathering = new Gathering();
+export function readDrawing(groups: Iterable<Group>, layer?: string): DxfDrawing {
+  const gathering = new Gathering(layer);
   let section = '';
   let variable = '';
   let opening = false;

@@ -23,6 +23,10 @@ const INSUNITS: Readonly<Record<number, DrawingUnit>> = { 1: 'inch', 4: 'mm', 5:
 export interface DxfOptions {
   /** The unit of a drawing that does not state one; without it such a drawing is refused. */
   readonly unitless?: DrawingUnit;
+  /** The same in metres per unit, for units without a name here. */
+  readonly unitlessScale?: number;
+  /** The only layer read, whatever its case; all of them if left out. */
+  readonly layer?: string;
   /** Ends nearer than this (m) are joined; 1 um. */
   readonly joinTolerance?: number;
   readonly origin?: OutlineOrigin;
@@ -31,23 +35,32 @@ export interface DxfOptions {
 /** What a DXF file held. */
 export interface ReadDxf extends ReadOutline {
   readonly unit?: DrawingUnit;
+  /** Metres per unit of the drawing. */
+  readonly scale?: number;
   /** Who stated the unit. */
   readonly unitFrom?: 'file' | 'caller';
   /** Entities passed over, by kind, most first. */
   readonly ignored: readonly { readonly kind: string; readonly count: number }[];
 }
 
-function unitOf(stated: number | undefined, unitless: DrawingUnit | undefined) {
+interface StatedUnit {
+  readonly unit?: DrawingUnit;
+  readonly unitFrom: 'file' | 'caller';
+  readonly scale: number;
+}
+
+function unitOf(stated: number | undefined, { unitless, unitlessScale }: DxfOptions): StatedUnit {
   const allowed = `$INSUNITS of ${Object.keys(INSUNITS).join(', ')}: ${Object.values(INSUNITS).join(', ')}`;
   if (stated !== undefined && stated !== 0) {
     const unit = INSUNITS[stated];
-    if (unit !== undefined) return { unit, unitFrom: 'file' } as const;
+    if (unit !== undefined) return { unit, unitFrom: 'file', scale: DRAWING_UNITS[unit] };
     throw new Refusal(
       `The drawing's unit is not one of these: $INSUNITS is ${stated}. Save it in millimetres.`,
       allowed,
     );
   }
-  if (unitless !== undefined) return { unit: unitless, unitFrom: 'caller' } as const;
+  if (unitless !== undefined) return { unit: unitless, unitFrom: 'caller', scale: DRAWING_UNITS[unitless] };
+  if (unitlessScale !== undefined) return { unitFrom: 'caller', scale: unitlessScale };
   throw new Refusal(
     'The drawing states no unit. State it where you open it, or set $INSUNITS in the drawing.',
     allowed,
@@ -80,18 +93,20 @@ function scaled({ x, y, pieces }: PathLoop, scale: number): PathLoop {
 
 function outlineOf(file: Uint8Array | string, options: DxfOptions): ReadDxf {
   const { joinTolerance = JOIN_TOLERANCE, origin = 'middle' } = options;
-  const drawing = readDrawing(dxfGroups(dxfText(file)));
+  const drawing = readDrawing(dxfGroups(dxfText(file)), options.layer);
   const ignored = [...drawing.ignored].map(([kind, count]) => ({ kind, count })).sort((a, b) => b.count - a.count);
   const warnings = ignoredWarning(ignored);
   if (drawing.chains.length === 0) {
     const refusal = new Refusal(
-      'There is no line, arc, circle or polyline in this drawing.',
+      options.layer === undefined
+        ? 'There is no line, arc, circle or polyline in this drawing.'
+        : `There is no line, arc, circle or polyline on the layer ${JSON.stringify(options.layer)}.`,
       'one closed loop or more',
     );
     return { loops: [], problems: [refusalProblem(refusal), ...warnings], ignored };
   }
-  const unit = unitOf(drawing.units, options.unitless);
-  const scale = DRAWING_UNITS[unit.unit];
+  const unit = unitOf(drawing.units, options);
+  const { scale } = unit;
   const joined = joinChains(drawing.chains, joinTolerance / scale);
   const loops = joined.loops.map((loop) => scaled(loop, scale));
   if (joined.branches.length > 0) {
@@ -104,7 +119,7 @@ function outlineOf(file: Uint8Array | string, options: DxfOptions): ReadDxf {
 }
 
 /**
- * The outline drawn in an ASCII DXF file, up to 8 MB: LINE, ARC, CIRCLE and LWPOLYLINE with bulges in model space, on any layer,
+ * The outline drawn in an ASCII DXF file, up to 8 MB: LINE, ARC, CIRCLE and LWPOLYLINE with bulges in model space, on one layer or any,
  * joined into loops where their ends meet within the tolerance. Other entities are passed over and counted. Which loops are
  * holes follows from how they lie in each other. Never throws on any file.
  * @throws RangeError when the tolerance is not positive

@@ -4,13 +4,15 @@ import { checkLoops, orientLoops, PATH_LIMITS } from '#src/base/outline-check.ts
 import { moveLoop } from '#src/base/outline-path.ts';
 import { fileWarning, type OutlineFileProblem, outlineFileProblem } from './problems.ts';
 
-/** Where the outline's own origin is: in the middle of the box around it, or where the file has its origin. */
-export type OutlineOrigin = 'middle' | 'file';
+/** Where the outline's own origin is: in the middle of the box around it, where the file has its origin, or at a point of the file (m). */
+export type OutlineOrigin = 'middle' | 'file' | { readonly x: number; readonly y: number };
 
 /** What a file held. Never both an outline and a refusal. */
 export interface ReadOutline {
   /** The outline, sound, its directions set by how the loops lie in each other. */
   readonly outline?: PathSpec;
+  /** Point of the file that became the outline's origin (m). */
+  readonly origin?: { readonly x: number; readonly y: number };
   /** The loops as read (m, the file's frame), to draw the problems on. */
   readonly loops: readonly PathLoop[];
   readonly problems: readonly OutlineFileProblem[];
@@ -59,6 +61,11 @@ function middleOf(loops: readonly PathLoop[]): { x: number; y: number } {
   }
 }
 
+function originOf(loops: readonly PathLoop[], origin: OutlineOrigin): { readonly x: number; readonly y: number } {
+  if (origin === 'middle') return middleOf(loops);
+  return origin === 'file' ? { x: 0, y: 0 } : origin;
+}
+
 /** Closes, mends, moves, turns and checks the loops of a file. */
 export function finishLoops(
   raw: readonly PathLoop[],
@@ -71,12 +78,14 @@ export function finishLoops(
   const mended = raw.map((loop) => withoutSlivers(closed(loop, tolerance)));
   const loops = mended.map(({ loop }) => loop);
   const merged = mended.reduce((sum, one) => sum + one.merged, 0);
-  const shift = origin === 'middle' ? middleOf(loops) : { x: 0, y: 0 };
+  const shift = originOf(loops, origin);
   const moved = loops.map((loop) => moveLoop(loop, -shift.x, -shift.y));
   // the direction a loop was drawn in means nothing here: how it lies in the others decides
   const faults = checkLoops(moved).filter(({ fault }) => fault !== 'holeOutside' && fault !== 'nesting');
   const warnings = merged > 0 ? [sliverWarning(merged)] : [];
-  if (faults.length === 0) return { outline: { kind: 'path', loops: orientLoops(moved) }, loops, problems: warnings };
+  if (faults.length === 0) {
+    return { outline: { kind: 'path', loops: orientLoops(moved) }, origin: shift, loops, problems: warnings };
+  }
   const problems = faults.map((fault) => outlineFileProblem({ ...fault, x: fault.x + shift.x, y: fault.y + shift.y }));
   return { loops, problems: [...problems, ...warnings] };
 }

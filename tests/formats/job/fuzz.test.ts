@@ -18,6 +18,63 @@ const whole = {
   cut: { voxelUm: 10, seed: 4 },
 };
 
+const many = {
+  ...whole,
+  cavity: {
+    outline: {
+      kind: 'polygon',
+      pointsMm: [
+        [0, 0],
+        [6, 0],
+        [6, 4],
+        [0, 4],
+      ],
+      holesMm: [
+        [
+          [2, 1],
+          [3, 1],
+          [3, 2],
+        ],
+      ],
+    },
+    through: true,
+  },
+  workpiece: {
+    ...whole.workpiece,
+    backing: 'bonded',
+    neighbours: [{ outline: { kind: 'circle', diameterMm: 1 }, xMm: 7, yMm: 0, depthMm: 1 }],
+  },
+  tool: {
+    material: 'copper',
+    bores: [{ xMm: -1, yMm: 0, diameterMm: 0.5 }],
+    face: { kind: 'cone', angleDeg: 170 },
+    lengthMm: 10,
+    wearLengthMm: 3,
+  },
+  machine: {
+    transducerAmplitudeUm: 5,
+    horn: { shape: 'conical', largeDiameterMm: 30, smallDiameterMm: 12, tuned: true },
+    exitLoadShare: 0.5,
+  },
+  slurry: {
+    abrasive: 'b4c',
+    grit: 'F320',
+    delivery: 'suction',
+    deliveryPressureKPa: 30,
+    renewal: 'recirculated',
+    sumpLitres: 3,
+  },
+  passes: [
+    { title: 'a', stockUm: 150, tool: { face: { kind: 'flat' } }, slurry: { grit: 'F220' } },
+    {
+      title: 'b',
+      depthMm: 6,
+      tool: { outline: { kind: 'path', svgPath: 'M.1-.1H5.9V-3.9H.1Z' } },
+      machine: { amplitudeUm: 9 },
+    },
+  ],
+};
+
 /** Every path of a value down to its fields. */
 function pathsOf(value: unknown, path: string[] = []): string[][] {
   if (typeof value !== 'object' || value === null) return [path];
@@ -30,6 +87,7 @@ function pathsOf(value: unknown, path: string[] = []): string[][] {
 function replaced(value: unknown, path: string[], by: unknown): unknown {
   const [key, ...rest] = path;
   if (key === undefined) return by;
+  if (Array.isArray(value)) return value.map((item, k) => (String(k) === key ? replaced(item, rest, by) : item));
   return { ...(value as object), [key]: replaced((value as Record<string, unknown>)[key], rest, by) };
 }
 
@@ -86,6 +144,15 @@ describe('reading a job never throws and always explains itself', () => {
         judged(JSON.stringify(replaced(once, b0, y)));
       }),
       { seed: 13, numRuns: 150 },
+    );
+  });
+
+  test('whatever stands in place of any one field of a job with everything in it', () => {
+    fc.assert(
+      fc.property(fc.constantFrom(...pathsOf(many)), wild, (path, by) => {
+        judged(JSON.stringify(replaced(many, path, by)));
+      }),
+      { seed: 16, numRuns: 150, endOnFailure: true },
     );
   });
 

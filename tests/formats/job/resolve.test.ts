@@ -50,6 +50,7 @@ describe('a job of few fields', () => {
       'tool.edgeRadiusMm',
       'tool.material',
       'tool.outline',
+      'tool.wearCompensated',
       'workpiece.cavityXMm',
       'workpiece.cavityYMm',
       'workpiece.lengthMm',

@@ -1,6 +1,8 @@
 import { expect } from 'vitest';
-import { readJob } from '#src/formats/job/read.ts';
+import { type ReadOptions, readJob } from '#src/formats/job/read.ts';
+import { type ResolvedJob, resolveJob } from '#src/formats/job/resolve.ts';
 import type { Problem } from '#src/formats/problems.ts';
+import { stockLibrary } from '#src/formats/stock-library.ts';
 
 /** A job of few lines: everything else takes its default. */
 export const base = () => ({
@@ -19,11 +21,20 @@ export const base = () => ({
 export type Base = ReturnType<typeof base>;
 
 /** Problems of the short job after a change to it. */
-export function problemsWith(spoil: (job: Base) => void): readonly Problem[] {
+export function problemsWith(spoil: (job: Base) => void, options: ReadOptions = {}): readonly Problem[] {
   const job = base();
   spoil(job);
-  const read = readJob(JSON.stringify(job));
+  const read = readJob(JSON.stringify(job), options);
   return read.problems ?? read.warnings;
+}
+
+/** The short job after a change to it, resolved; fails when it is refused. */
+export function resolvedWith(change: (job: Base) => void, options: ReadOptions = {}): ResolvedJob {
+  const job = base();
+  change(job);
+  const read = readJob(JSON.stringify(job), options);
+  if (!read.job) throw new Error(JSON.stringify(read.problems, null, 1));
+  return resolveJob(read.job, stockLibrary, { ...options, checked: read.warnings });
 }
 
 /** The one problem at a path; fails when it is not there. */
