@@ -38,7 +38,9 @@ const SAME = 1e-9;
  * floor, sloping faces ten. The way to the first contact is free and left out; so is a tip that never touches.
  */
 export function contactsOf({ tool, face, depth, earlier }: Descent): Contact[] {
-  const cells = touchedCells(makeOutline(tool), face, earlier);
+  const outline = makeOutline(tool);
+  if (face.kind === 'flat' && !earlier) return [{ from: 0, to: depth, area: outline.area, whole: true }];
+  const cells = touchedCells(outline, face, earlier);
   const total = cells.reduce((sum, { area }) => sum + area, 0);
   const levels = levelsOf(cells, depth);
   const contacts: Contact[] = [];
