@@ -1,43 +1,54 @@
-import { atan } from '#src/base/math.ts';
-import { meanChipVolume, radialCrack } from './crater.ts';
+import { radialCrack } from './crater.ts';
 import type { EdgeChip } from './edge-chip.ts';
+import { breakingThickness, crackedStrength, type ExitBreakout, exitBreakout, exitLoad } from './exit.ts';
 import { engagedShare, type FloorState, loadQuantiles, overFloor, steadyFloor } from './floor.ts';
-import { freeImpact } from './free-impact.ts';
-import { contactRows, type GapSums, gapSums, TERM } from './gap-sums.ts';
-import type { SlurryConstants } from './process/constants.ts';
-import type { FaceShape } from './process/face.ts';
-import { throughDepth } from './process/through-depth.ts';
+import { TERM } from './gap-sums.ts';
+import type { ToolLife } from './pass.ts';
+import { usedPopulation } from './process/charge.ts';
+import type { SlurryFace } from './process/slurry-face.ts';
+import { type Leg, legsOf, type Stage, type Through } from './process/stages.ts';
+import { type EstimateTables, estimateTables, type FloorRate, rateOf, withPopulation } from './process/tables.ts';
+import type { WayDown } from './process/through-depth.ts';
+import { toolsWay } from './process/tool-life.ts';
+import { wallFigures } from './process/walls.ts';
 import type { Conditions } from './records.ts';
-import { rimChips } from './rim.ts';
-import type { Carrier } from './slurry/viscosity.ts';
-import { faceWearRate, wearRatio } from './tool-wear.ts';
-import { gapAfter, type WallLaw, wallHits, wallLaw } from './wall.ts';
+import { wearRatio } from './tool-wear.ts';
+
+export { usedPopulation } from './process/charge.ts';
+export { makeSlurryFace, type SlurryFace, type SlurryFaceOptions } from './process/slurry-face.ts';
+export type { Stage } from './process/stages.ts';
+export { type EstimateTables, estimateTables, type FloorRate, memberTables } from './process/tables.ts';
 
 /** What an estimate is asked for. SI. */
 export interface EstimateSetting {
   readonly conditions: Conditions;
-  /** Mean pressure on the tool face (Pa): static load over face area. */
-  readonly pressure: number;
+  /** Static load (N); `pressure` times `faceArea` if left out. One of the two is needed. */
+  readonly load?: number;
+  /** Mean pressure on the whole tool face (Pa): static load over face area. */
+  readonly pressure?: number;
   /** Area of the tool face (m2). */
   readonly faceArea: number;
   /** Area and perimeter of the cavity's outline (m2, m). */
   readonly outlineArea: number;
   readonly perimeter: number;
-  /** Depth of the cavity (m). */
+  /** Depth of the cavity (m): of the tool's tip, if nothing of it is lost. */
   readonly depth: number;
   /** Lateral run-out, zero-to-peak (m). */
   readonly runout: number;
-  /** Pressures of the load curve (Pa); none if left out. */
-  readonly loadCurve?: readonly number[];
+  /** Edge radius of the tool as it comes to this pass (m); sharp if left out. */
+  readonly edgeRadius?: number;
+  /** Parts of the way down with their own contact area and slurry; one, of the whole face, if left out. */
+  readonly stages?: readonly Stage[];
   /** The slurry under the face; fresh grit everywhere if left out. */
   readonly slurry?: SlurryFace;
-}
-
-/** What the balance of the slurry under the face needs beside the conditions. */
-export interface SlurryFace {
-  readonly shape: FaceShape;
-  readonly carrier: Carrier;
-  readonly constants: SlurryConstants;
+  /** How the length lost is dealt with; made up for, and no end to it, if left out. */
+  readonly toolLife?: ToolLife;
+  /** A through-cut. */
+  readonly exit?: Through;
+  /** Number shares by size class of the slurry as it comes to this pass; the grade's own if left out. */
+  readonly population?: Float64Array;
+  /** Pressures of the load curve (Pa); none if left out. */
+  readonly loadCurve?: readonly number[];
 }
 
 /** The rate at one pressure of the load curve. */
@@ -48,29 +59,29 @@ export interface LoadPoint {
   readonly carried: boolean;
 }
 
-/** How fast and by what a floor sinks. */
-export interface FloorRate {
-  /** Rate of sinking (m/s). */
-  readonly rate: number;
-  /** Share of the removal by dents that leave, free impacts included. */
-  readonly plasticShare: number;
-  /** Share of the removal by thrown grits. */
-  readonly freeImpactShare: number;
-}
-
 /**
- * The mean-field answer. SI. Without a slurry face, grit is fresh everywhere: the rate does not fall with depth, rises with
- * load without a best load, and no stall is defined.
+ * The mean-field answer. SI. Floor, loads, damage and roughness are those at the end of the way down; time and wear are
+ * sums over it. Without a slurry face, grit is fresh everywhere: the rate does not fall with depth, rises with load without
+ * a best load, and no stall is defined.
  */
 export interface Estimate extends FloorRate {
   /** Rate of sinking at the entry face and at depth (m/s). */
   readonly rateStart: number;
   readonly rateEnd: number;
-  /** Pressure at which the exchange breaks down at depth (Pa), and what is left of it: 1 - pressure / stall. Null where fresh. */
+  /** Depth the cavity comes to (m), less than asked for where the tool runs out or its wear is not made up for. */
+  readonly depthReached: number;
+  readonly ranOut: boolean;
+  /** The load is above what the exchange of slurry bears somewhere on the way down. */
+  readonly stalled: boolean;
+  /** Where the margin is least: the pressure at which the exchange breaks down (Pa), and 1 - pressure / stall. Null where fresh. */
   readonly stallPressure: number | null;
   readonly stallMargin: number | null;
+  /** Pressure of the highest rate at depth (Pa); null where fresh. */
+  readonly bestPressure: number | null;
   /** The grits bear the pressure; false: the state is that of the largest pressure they bear. */
   readonly carried: boolean;
+  /** Grains long enough to touch both faces over those of fresh slurry at the same gap. */
+  readonly freshFraction: number;
   /** Tool face over the mean floor at closest approach, and averaged over the cycle (m). */
   readonly gap: number;
   readonly meanGap: number;
@@ -89,84 +100,35 @@ export interface Estimate extends FloorRate {
   /** Floor roughness Sq and Ra (m), Ra taken as Sa. */
   readonly floorSq: number;
   readonly floorRa: number;
+  /** Height of the floor under the oldest slurry over that under the freshest (m); Infinity where a boss stays uncut. */
+  readonly hump: number;
   /** Radial crack depth that 99 % and 99.9 % of the hits stay below (m). */
   readonly damageDepth: number;
   readonly largestDamage: number;
-  /** Time to depth (s); Infinity when nothing is removed. */
+  /** Time to the depth reached (s); Infinity when nothing is removed. */
   readonly time: number;
-  /** Length the tool loses on the way (m), and volume of tool per volume of work. */
+  /** Length the tool loses on the way (m), and volume of tool per volume of work, side and edge included. */
   readonly toolWearLength: number;
   readonly toolWearRatio: number;
-  /** Side gap at 0.1 of the depth, and 0.2 mm (at most 0.2 of the depth) above the floor (m). */
+  /** Radius of the tool's worn edge, and how far its side stands in there (m). */
+  readonly toolEdgeRadius: number;
+  readonly toolSideLoss: number;
+  /** Radius between wall and floor (m): the worn edge and half the gap under the face, as grains roll it. */
+  readonly cornerRadius: number;
+  /** Wall over the new tool's outline at 0.1 of the depth, and 0.2 mm (at most 0.2 of the depth) above the floor (m). */
   readonly overcutEntry: number;
   readonly overcutFloor: number;
-  /** Half-angle of the wall between 10 and 90 % of the depth, least squares (rad), positive when wider at the top. */
+  /** Half-angle of the wall, least squares (rad), positive when wider at the top; NaN where the fillet takes half of it. */
   readonly taper: number;
-  /** Chips along the entry rim: 95 % of its length, and the deepest. */
+  /** Chips along the entry rim: 95 % of its length, and the deepest; NaN where the cavity has no wall yet. */
   readonly edgeChipP95: EdgeChip;
   readonly edgeChipLargest: EdgeChip;
+  /** What breaks out at the exit; null where the cavity does not come through. */
+  readonly exit: ExitBreakout | null;
   readonly loadCurve: readonly LoadPoint[];
 }
 
-/** Height above the floor at which its size is taken (m). */
-const FLOOR_SIZE_HEIGHT = 0.2e-3;
-const TAPER_POINTS = 33;
-
-/** Work that depends on the conditions alone: share it between loads and depths of one slurry, tool and material. */
-export interface EstimateTables {
-  readonly sums: GapSums;
-  /** Chip and dent volume that leaves per thrown grit, by class from the largest down (m3). */
-  readonly thrownChips: Float64Array;
-  readonly thrownDents: Float64Array;
-}
-
-/**
- * Tables for `estimate`.
- * @param population number shares by size class, the grade's own (fresh grit) if left out
- */
-export function estimateTables(conditions: Conditions, population?: Float64Array): EstimateTables {
-  const rows = contactRows(conditions);
-  const { chipYield, plasticShare } = conditions.constants;
-  const thrownChips = new Float64Array(rows.classes.diameter.length);
-  const thrownDents = new Float64Array(rows.classes.diameter.length);
-  rows.classes.diameter.forEach((d, i) => {
-    const hit = freeImpact(conditions, d);
-    const share = rows.yields[i] as number;
-    thrownChips[i] = chipYield * share * meanChipVolume(rows.crater, hit.load);
-    thrownDents[i] = plasticShare * share * hit.dent;
-  });
-  return { sums: gapSums(rows, population), thrownChips, thrownDents };
-}
-
-/** Removal by the grits too short to touch both faces: each strikes once per cycle, thrown (m3 per grit in the film). */
-function thrown(tables: EstimateTables, gap: number): { chips: number; dents: number } {
-  const { rows, population } = tables.sums;
-  let chips = 0;
-  let dents = 0;
-  rows.classes.diameter.forEach((d, i) => {
-    if (d > gap) return;
-    chips += (population[i] as number) * (tables.thrownChips[i] as number);
-    dents += (population[i] as number) * (tables.thrownDents[i] as number);
-  });
-  return { chips, dents };
-}
-
-/** Rate of sinking of a steady floor: chips less overlap, dents, and free impacts. Dents carry no overlap. */
-function rateOf(tables: EstimateTables, floor: FloorState): FloorRate {
-  const { sums } = tables;
-  const chips = floor.overlap * overFloor(sums, TERM.chipVolume, floor.gap, floor.roughness);
-  const dents = overFloor(sums, TERM.dent, floor.gap, floor.roughness);
-  const free = thrown(tables, floor.gap);
-  const freeChips = floor.overlap * free.chips;
-  const volume = chips + dents + freeChips + free.dents;
-  return {
-    rate: sums.rows.conditions.frequency * floor.grits * volume,
-    plasticShare: volume > 0 ? (dents + free.dents) / volume : 0,
-    freeImpactShare: volume > 0 ? (freeChips + free.dents) / volume : 0,
-  };
-}
-
-/** Rates at several pressures from one set of tables, in the order given. */
+/** Rates at several pressures of fresh grit from one set of tables, in the order given. */
 export function loadCurve(tables: EstimateTables, pressures: readonly number[]): LoadPoint[] {
   let guess: FloorState | undefined;
   return pressures.map((pressure) => {
@@ -200,120 +162,69 @@ export function pressureForRate(tables: EstimateTables, rate: number): number | 
   return high;
 }
 
-/** Side gap at a depth below the entry, once the cavity is finished (m). */
-function gapAt(wall: WallLaw, setting: EstimateSetting, rate: number, depth: number): number {
-  return gapAfter(wall, rate > 0 ? (setting.depth - depth) / rate : 0);
-}
+/** A setting whose load is known and whose numbers hold. */
+type Loaded = EstimateSetting & { readonly load: number; readonly edgeRadius: number };
 
-/** Least-squares slope of the side gap against depth between 10 and 90 %, as an angle (rad). */
-function taperOf(wall: WallLaw, setting: EstimateSetting, rate: number): number {
-  let sumXX = 0;
-  let sumXY = 0;
-  for (let i = 0; i < TAPER_POINTS; i++) {
-    const fraction = 0.1 + (0.8 * i) / (TAPER_POINTS - 1);
-    const x = (fraction - 0.5) * setting.depth;
-    sumXX += x * x;
-    sumXY += x * gapAt(wall, setting, rate, fraction * setting.depth);
-  }
-  return sumXX > 0 ? atan(-sumXY / sumXX) : 0;
-}
-
-/** What the estimate says of walls and rim. */
-function wallFigures(setting: EstimateSetting, rate: number) {
-  const { conditions, depth } = setting;
-  const wall = wallLaw(conditions, setting.runout);
-  const exposure = rate > 0 ? depth / rate : 0;
-  const chips = rimChips(conditions, wallHits(wall, exposure), setting.perimeter);
-  return {
-    overcutEntry: gapAt(wall, setting, rate, 0.1 * depth),
-    overcutFloor: gapAt(wall, setting, rate, depth - Math.min(FLOOR_SIZE_HEIGHT, 0.2 * depth)),
-    taper: taperOf(wall, setting, rate),
-    edgeChipP95: chips.p95,
-    edgeChipLargest: chips.largest,
-  };
-}
-
-function checkSetting(setting: EstimateSetting): void {
-  for (const name of ['pressure', 'faceArea', 'outlineArea', 'perimeter', 'depth'] as const) {
+function checked(setting: EstimateSetting): Loaded {
+  const { edgeRadius = 0 } = setting;
+  for (const name of ['faceArea', 'outlineArea', 'perimeter', 'depth'] as const) {
     const value = setting[name];
     if (!(value > 0 && value < Number.POSITIVE_INFINITY))
       throw new RangeError(`${name} must be positive, got ${value}`);
   }
+  const load = setting.load ?? (setting.pressure ?? Number.NaN) * setting.faceArea;
+  if (!(load > 0 && load < Number.POSITIVE_INFINITY))
+    throw new RangeError(`load or pressure must be positive, got ${setting.load ?? setting.pressure}`);
+  if (!(edgeRadius >= 0)) throw new RangeError(`edgeRadius must not be negative, got ${edgeRadius}`);
+  return { ...setting, load, edgeRadius };
 }
 
-/** How a cut goes on average: the floor it keeps, the grit that makes it, and the way down. */
-interface Cutting {
-  readonly sums: GapSums;
-  readonly floor: FloorState;
-  readonly rate: FloorRate;
-  readonly rateStart: number;
-  readonly rateEnd: number;
-  readonly time: number;
-  readonly toolWearLength: number;
-  readonly stallPressure: number | null;
+/** Without vibration or grit nothing is exchanged and nothing cut: the slurry does not matter. */
+function withoutSlurry(setting: Loaded): Loaded {
+  const { slurry: _, stages, ...rest } = setting;
+  return { ...rest, ...(stages && { stages: stages.map(({ slurry: __, ...stage }) => stage) }) };
 }
 
-/** Fresh grit everywhere: one floor all the way down. */
-function cutFresh(setting: EstimateSetting, tables: EstimateTables): Cutting {
-  const { conditions, depth } = setting;
-  const { sums } = tables;
-  const floor = steadyFloor(sums, setting.pressure);
-  const rate = rateOf(tables, floor);
-  const toolDents = overFloor(sums, TERM.toolDent, floor.gap, floor.roughness);
-  const wearRate = faceWearRate(conditions.frequency * floor.grits, toolDents, conditions.constants);
-  const time = depth / rate.rate;
-  return {
-    sums,
-    floor,
-    rate,
-    rateStart: rate.rate,
-    rateEnd: rate.rate,
-    time,
-    toolWearLength: rate.rate > 0 ? wearRate * time : 0,
-    stallPressure: null,
+/** The way down with the charge as it is half way through the pass. */
+function wayWith(setting: Loaded, tables: EstimateTables): { way: WayDown; legs: readonly Leg[]; ranOut: boolean } {
+  const legs = legsOf(setting);
+  const leg = legs.find(({ slurry }) => slurry?.charge) ?? legs[0];
+  const charge = leg?.slurry?.charge;
+  if (!leg?.slurry || !charge || setting.population) return { ...toolsWay(legs, tables, setting.toolLife), legs };
+  const use = { slurry: leg.slurry, ...leg, volume: charge.volume, depth: (leg.from + leg.to) / 2 };
+  const after = (used: number) => {
+    const shares = usedPopulation(tables, { ...use, slurry: leg.slurry as SlurryFace, used });
+    return toolsWay(legs, withPopulation(tables, shares), setting.toolLife);
   };
+  const before = after(charge.used);
+  if (!(before.way.time < Number.POSITIVE_INFINITY)) return { ...before, legs };
+  return { ...after(charge.used + before.way.time / 2), legs };
 }
 
-/** Slurry balanced at every depth; the shares of dents and thrown grits are those half way down. */
-function cutWithSlurry(setting: EstimateSetting, tables: EstimateTables, slurry: SlurryFace): Cutting {
-  const way = throughDepth({ ...slurry, ...setting }, tables.sums);
-  const shares = rateOf({ ...tables, sums: way.sums }, way.floor);
-  return {
-    sums: way.sums,
-    floor: { ...way.floor, carried: way.carried },
-    rate: { ...shares, rate: setting.depth / way.time },
-    rateStart: way.rateStart,
-    rateEnd: way.rateEnd,
-    time: way.time,
-    toolWearLength: way.toolWearLength,
-    stallPressure: way.stallPressure,
-  };
+/** What breaks out where the cavity comes through. */
+function breakoutOf(setting: Loaded, depth: number, figures: { largestLoad: number; largestDamage: number }) {
+  const { exit, conditions, load } = setting;
+  if (!exit || depth < exit.thickness) return null;
+  const { work, constants } = conditions;
+  const strength = crackedStrength(work, figures.largestDamage);
+  return exitBreakout({
+    load: exitLoad(load, exit, (force) => breakingThickness(force, strength)),
+    work,
+    crack: figures.largestDamage,
+    backing: exit.backing,
+    edgeLoad: figures.largestLoad,
+    constants,
+  });
 }
 
-/**
- * The mean-field estimate of one setting.
- * @param tables from `estimateTables` of the same conditions, to save their work
- * @throws RangeError when pressure, areas or depth are not positive and finite
- */
-export function estimate(
-  setting: EstimateSetting,
-  tables: EstimateTables = estimateTables(setting.conditions),
-): Estimate {
-  checkSetting(setting);
-  const { conditions, depth, slurry } = setting;
-  const cutting = slurry ? cutWithSlurry(setting, tables, slurry) : cutFresh(setting, tables);
-  const { sums, floor, rate, time, toolWearLength } = cutting;
+/** Floor, loads and damage at the end of the way down. */
+function floorFigures(conditions: Conditions, { end }: WayDown) {
+  const { sums, floor } = end;
   const { gap, roughness, grits } = floor;
   const share = engagedShare(sums, gap, roughness);
   const chips = overFloor(sums, TERM.chips, gap, roughness);
   const [load99 = 0, load999 = 0] = loadQuantiles(sums, floor, [0.99, 0.999]);
   return {
-    ...rate,
-    rateStart: cutting.rateStart,
-    rateEnd: cutting.rateEnd,
-    stallPressure: cutting.stallPressure,
-    stallMargin: cutting.stallPressure === null ? null : 1 - setting.pressure / cutting.stallPressure,
-    carried: floor.carried,
     gap,
     meanGap: gap + conditions.amplitude,
     engaged: grits * share,
@@ -327,10 +238,55 @@ export function estimate(
     floorRa: conditions.constants.meanOverRms * roughness,
     damageDepth: radialCrack(sums.rows.crater, load99),
     largestDamage: radialCrack(sums.rows.crater, load999),
+    hump: end.hump,
+    freshFraction: end.freshFraction,
+    bestPressure: end.bestPressure,
+  };
+}
+
+/** Volume of work removed down to the depth reached (m3). */
+function workVolume(setting: Loaded, legs: readonly Leg[], depth: number): number {
+  if (!setting.stages) return setting.outlineArea * depth;
+  const rim = setting.outlineArea / setting.faceArea;
+  return legs.reduce((sum, { area, from, to }) => sum + rim * area * Math.max(0, Math.min(to, depth) - from), 0);
+}
+
+/**
+ * The mean-field estimate of one setting.
+ * @param tables from `estimateTables` of the same conditions, to save their work
+ * @throws RangeError when load, areas or depth are not positive and finite, and when stages do not join
+ */
+export function estimate(
+  setting: EstimateSetting,
+  tables: EstimateTables = estimateTables(setting.conditions),
+): Estimate {
+  const { conditions, population } = setting;
+  const works = conditions.amplitude > 0 && conditions.concentration > 0;
+  const loaded = works ? checked(setting) : withoutSlurry(checked(setting));
+  const { way, legs, ranOut } = wayWith(loaded, population ? withPopulation(tables, population) : tables);
+  const { stations, time, lost, end } = way;
+  const depthReached = stations.at(-1)?.depth ?? 0;
+  const floor = floorFigures(conditions, way);
+  const walls = wallFigures(loaded, way, depthReached);
+  const { toolVolume, ...wallsShown } = walls;
+  const sunk = depthReached - (stations[0]?.depth ?? 0);
+  return {
+    ...end.rate,
+    rate: sunk / time,
+    rateStart: stations[0]?.rate ?? 0,
+    rateEnd: stations.at(-1)?.rate ?? 0,
+    depthReached,
+    ranOut,
+    stalled: way.stalled,
+    stallPressure: way.stallPressure,
+    stallMargin: way.stallMargin,
+    carried: way.carried,
+    ...floor,
     time,
-    toolWearLength,
-    toolWearRatio: wearRatio(toolWearLength * setting.faceArea, setting.outlineArea * depth),
-    ...wallFigures(setting, rate.rate),
+    toolWearLength: lost,
+    toolWearRatio: wearRatio(toolVolume, workVolume(loaded, legs, depthReached)),
+    ...wallsShown,
+    exit: breakoutOf(loaded, depthReached, floor),
     loadCurve: loadCurve(tables, setting.loadCurve ?? []),
   };
 }

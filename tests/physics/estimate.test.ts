@@ -139,12 +139,18 @@ describe('limits', () => {
             edgeChipP95,
             edgeChipLargest,
             carried,
+            ranOut,
+            stalled,
             ...figures
           } = at({ ...base, work, amplitude, concentration }, pressure);
-          const numbers = [...Object.values(figures), ...Object.values(edgeChipP95), ...Object.values(edgeChipLargest)];
+          const { overcutEntry, overcutFloor, taper, ...rest } = figures;
+          // a tool worn away on the way leaves a rounded hole: narrower than itself, and nothing but fillet
+          expect(Number.isFinite(overcutEntry) && Number.isFinite(overcutFloor)).toBe(true);
+          expect(taper).not.toBe(Number.POSITIVE_INFINITY);
+          const numbers = [...Object.values(rest), ...Object.values(edgeChipP95), ...Object.values(edgeChipLargest)];
           // with fresh grit there is no stall: its two figures are null
           for (const value of numbers) expect(value === null || (Number.isFinite(value) && value >= 0)).toBe(true);
-          expect(typeof carried).toBe('boolean');
+          for (const flag of [carried, ranOut, stalled]) expect(typeof flag).toBe('boolean');
         },
       ),
       { seed: 51, numRuns: 30 },

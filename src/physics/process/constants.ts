@@ -9,6 +9,11 @@ export interface SlurryConstants {
   readonly sideSpeed: number;
   /** Width of the side gap the slurry passes over the median grain. */
   readonly sideGap: number;
+  /**
+   * Width at which the side gap resists a forced flow over the median grain: 1.4 at the foot, 1.7 to 2.1 at the entry once
+   * the wall has opened (found in the cut); the loss goes by the inverse cube, averaged over the depth.
+   */
+  readonly sideFlowGap: number;
   /** Reynolds number of the film at which viscosity halves the exchange. */
   readonly exchangeReynolds: number;
   /** Debris over the grit's own volume that halves the useful hits. */
@@ -24,6 +29,7 @@ export const slurryConstants: SlurryConstants = {
   pumping: 0.025,
   sideSpeed: 1,
   sideGap: 1.5,
+  sideFlowGap: 1.75,
   exchangeReynolds: 20,
   shielding: 0.2,
   finesYield: 1,
@@ -39,6 +45,7 @@ export const slurryNotes: Record<keyof SlurryConstants, ConstantNote> = {
   },
   sideSpeed: { min: 0.3, max: 2, source: 'assumed: the side of the tool drags the slurry at about its own speed' },
   sideGap: { min: 1.2, max: 2, source: 'side gap of 1.5 to 2 grains, common practice, from memory' },
+  sideFlowGap: { min: 1.5, max: 2.1, source: 'found in the cut: foot 1.4 grains, entry 1.7 to 2.1' },
   exchangeReynolds: { min: 5, max: 60, source: 'assumed: films below this Reynolds number no longer stir' },
   shielding: {
     min: 0.1,

@@ -37,7 +37,7 @@ describe('the shape of exchange', () => {
     // closed form of div(h D grad T) = -h with D = k_D h + k_P r: T = integral from r to R of r' / (2 D(r'))
     const radius = 6.35e-3;
     const face = waterFace(glass, disc(2 * radius), 96);
-    const film = face.shape.films[2] as number;
+    const film = face.shape.films[1] as number;
     const { stirring, pumping } = slurryConstants;
     const age = (r: number) => {
       let sum = 0;
