@@ -18,9 +18,9 @@ import { hitYield } from './yields.ts';
  */
 
 /** Nodes of the run-out's scatter: -3 to 3 standard deviations. */
-const RUNOUT_NODES = 25;
-const SQUEEZE_NODES = 12;
-const GAPS = 129;
+const RUNOUT_NODES = 13;
+const SQUEEZE_NODES = 8;
+const GAPS = 65;
 const OVERLAPS = 65;
 const DIAMETERS = 5;
 const DENSITIES = 257;
