@@ -1,7 +1,7 @@
 import { PEN } from './palette.ts';
 import { askLabel, drawLine, keepClear, type Sheet } from './sheet.ts';
 import { element, pathData } from './svg.ts';
-import { type ToolOutline, toolProfile } from './tool.ts';
+import { type ToolOutline, toolProfiles } from './tool.ts';
 import { textWidth } from './type.ts';
 
 /** A corner of the cut enlarged in a circle: the work in the glass tone, the tool hatched, as new dotted. */
@@ -73,21 +73,22 @@ function drawInside(sheet: Sheet, detail: CornerDetail): void {
   ];
   if (detail.tool !== undefined) {
     const above = detail.z - (2 * detail.radius) / detail.scale;
-    inner.push(
-      element('path', {
-        d: pathData(at(toolProfile(detail.tool, above)), true),
-        fill: `url(#${detail.id}-hatch)`,
-        stroke: palette.ink,
-        'stroke-width': 1.2 * unit,
-      }),
-      element('path', {
-        d: pathData(at(toolProfile(detail.tool, above, 'new'))),
-        fill: 'none',
-        stroke: palette.ink,
-        'stroke-width': PEN.dimension * unit,
-        'stroke-dasharray': `${1.2 * unit} ${2 * unit}`,
-      }),
-    );
+    for (const profile of toolProfiles(detail.tool, above)) {
+      const d = pathData(at(profile), true);
+      const stroke = { stroke: palette.ink, 'stroke-width': 1.2 * unit };
+      inner.push(element('path', { d, fill: `url(#${detail.id}-hatch)`, ...stroke }));
+    }
+    for (const profile of toolProfiles(detail.tool, above, 'new')) {
+      inner.push(
+        element('path', {
+          d: pathData(at(profile)),
+          fill: 'none',
+          stroke: palette.ink,
+          'stroke-width': PEN.dimension * unit,
+          'stroke-dasharray': `${1.2 * unit} ${2 * unit}`,
+        }),
+      );
+    }
   }
   const strokes = at(detail.cracks ?? []);
   let cracks = '';

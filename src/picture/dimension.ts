@@ -28,6 +28,8 @@ export interface LinearDimension {
   readonly origins: readonly [number, number];
   readonly text: string;
   readonly style?: LabelStyle;
+  /** Lines that stand already take the place of the extension lines. */
+  readonly bare?: boolean;
 }
 
 /** Shares along the dimension line at which its text is tried: the middle, then away from a centre line. */
@@ -38,11 +40,15 @@ export function drawWidth(sheet: Sheet, dimension: LinearDimension): void {
   const { from, to, at, origins } = dimension;
   const { unit } = sheet;
   const pen = { colour: sheet.palette.ink, width: PEN.dimension };
-  [from, to].forEach((x, n) => {
-    const origin = origins[n] as number;
+  for (const [x, origin] of dimension.bare
+    ? []
+    : ([
+        [from, origins[0]],
+        [to, origins[1]],
+      ] as const)) {
     const side = Math.sign(at - origin);
     drawLine(sheet, [x, origin + side * 2 * unit, x, at + side * OVERRUN * unit], pen);
-  });
+  }
   const tight = to - from < 3 * ARROW_LENGTH * unit;
   const reach = tight ? 2 * ARROW_LENGTH * unit : 0;
   drawLine(sheet, [from - reach, at, to + reach, at], pen);

@@ -62,6 +62,8 @@ export const PEN = {
   nominalDash: [7, 4],
   centreDash: [14, 3, 3, 3],
   toolDash: [4, 3],
+  newToolDash: [1.2, 2],
+  earlierToolDash: [7, 3, 1.5, 3],
 } as const;
 
 /** Red, green and blue 0..255 of "#rrggbb". Throws RangeError on anything else. */

@@ -140,6 +140,8 @@ export interface LabelStyle {
   readonly colour?: string;
   /** Longer text ends in an ellipsis (drawing units). */
   readonly widest?: number;
+  /** Colour of a box behind the text, where the ground is hatched. */
+  readonly ground?: string;
 }
 
 /** A place for a label: the end, middle or start of its base line, with the leader it then needs. */
@@ -225,6 +227,11 @@ export function drawLabel(sheet: Sheet, text: string, places: readonly Place[], 
   }
   const label = { text: line, box, conflicts };
   sheet.labels.push(label);
+  if (style.ground !== undefined) {
+    const room = 4 * unit;
+    const size = { width: box.width + 2 * room, height: box.height + room };
+    sheet.parts.push(element('rect', { x: box.x - room, y: box.y - room / 2, ...size, fill: style.ground }));
+  }
   sheet.parts.push(
     element(
       'text',

@@ -62,12 +62,45 @@ const CASES: readonly (readonly [string, SectionDrawing])[] = [
   ['chip at the right', drawing(3e-3, 1e-3, { chip: { width: 40e-6, depth: 12e-6, side: 'right' } })],
 ];
 
+const OUT = { size: 2.99e-3, chip: { width: 200e-6, depth: 80e-6, side: 'right' }, backing: false } as const;
+const WIDE = { from: -2.6e-3, to: 2.6e-3 };
+const FORMS: readonly (readonly [string, SectionDrawing])[] = [
+  ['through', drawing(3e-3, 2e-3, { thickness: 2e-3, exit: OUT })],
+  ['through, backed', drawing(3e-3, 2e-3, { thickness: 2e-3, exit: { ...OUT, backing: true, into: 60e-6 } })],
+  ['through a thin plate', drawing(3e-3, 0.2e-3, { thickness: 0.2e-3, exit: OUT })],
+  [
+    'through, chip at the left',
+    drawing(3e-3, 2e-3, { thickness: 2e-3, exit: { ...OUT, chip: { ...OUT.chip, side: 'left' } } }),
+  ],
+  ['deep and through', drawing(0.6e-3, 4e-3, { thickness: 4e-3, exit: { ...OUT, size: 0.59e-3, backing: true } })],
+  ['no plane floor', drawing(3e-3, 1e-3, { shaped: true, floorSize: Number.NaN, taper: Number.NaN })],
+  ['stepped', drawing(3e-3, 1.4e-3, { shoulder: { depth: 0.5e-3 }, floorSize: 1.6e-3 })],
+  [
+    'three islands',
+    drawing(1.2e-3, 0.8e-3, {
+      centre: -2e-3,
+      centres: [-2e-3, 0, 2e-3],
+      extent: WIDE,
+      ...pocket(5.2e-3, 5.1e-3, 0.8e-3, 0.1e-3),
+    }),
+  ],
+  [
+    'two passes',
+    drawing(3e-3, 1e-3, {
+      caption: Array.from({ length: 4 }, (_, n) => `Pass ${n + 1}: as before`),
+      earlier: [{ width: 2.7e-3, centre: 0, faceDepth: 0.9e-3, edgeRadius: 1e-5, worn: 0, newEdgeRadius: 1e-5 }],
+    }),
+  ],
+  ['off the middle', drawing(3e-3, 1e-3, { plane: -0.8e-3 })],
+  ['no corner measured', drawing(3e-3, 1e-3, { cornerRadius: Number.NaN })],
+];
+
 let rasteriser: Rasteriser;
 beforeAll(async () => {
   rasteriser = await testRasteriser();
 });
 
-test.each(CASES)('labels touch neither lines nor each other: %s', (_name, record) => {
+test.each([...CASES, ...FORMS])('labels touch neither lines nor each other: %s', (_name, record) => {
   const drawn = drawSection(record);
   checkWellFormed(drawn.svg);
   expect(labelClashes(drawn.labels, drawn.strokes)).toEqual([]);
@@ -104,6 +137,33 @@ test('it is sized for print: 180 mm wide to 0.2 mm, with lettering of 2.9 mm (11
   const width = Number(/width="([\d.]+)mm"/.exec(svg)?.[1]);
   expect(Math.abs(width - 180)).toBeLessThan(0.2);
   for (const match of svg.matchAll(/font-size="([\d.]+)"/g)) expect(Number(match[1])).toBeGreaterThanOrEqual(11);
+});
+
+const words = (record: SectionDrawing): string[] => drawSection(record).labels.map(({ text }) => text);
+const form = (name: string): SectionDrawing =>
+  (FORMS.find(([own]) => own === name) as readonly [string, SectionDrawing])[1];
+
+test('a hole through the work has an exit and its chip, and neither floor nor corner', () => {
+  const told = words(form('through'));
+  expect(told).toEqual(expect.arrayContaining(['exit \u00d8\u20092.990', 'exit chip 200 \u00d7 80 \u00b5m', '2.000']));
+  expect(told.filter((text) => /floor|corner|backing/i.test(text))).toEqual([]);
+  expect(words(form('through, backed'))).toContain('backing');
+});
+
+test('a floor that is no plane has neither size nor corner', () => {
+  const told = words(form('no plane floor'));
+  expect(told.filter((text) => /floor|corner/i.test(text))).toEqual([]);
+  expect(told).toContain('Depth, tip');
+});
+
+test('a stepped hole shows both depths and both sizes', () => {
+  expect(words(form('stepped'))).toEqual(
+    expect.arrayContaining(['0.500', '1.400', 'entry \u00d8\u20093.000', 'pilot \u00d8\u20091.600']),
+  );
+});
+
+test('several islands show the size of one and the pitch to the next', () => {
+  expect(words(form('three islands'))).toEqual(expect.arrayContaining(['entry \u00d8\u20091.200', 'pitch 2.000']));
 });
 
 test('hostile titles, captions and limits stay text on the sheet', () => {

@@ -1,7 +1,7 @@
 import { makeOutline } from '#src/base/outline.ts';
 import type { EstimateSetting } from '#src/physics/estimate.ts';
 import { advance, isDone } from '#src/voxel/advance.ts';
-import { type Cut, makeCut } from '#src/voxel/cut.ts';
+import { type Cut, makeCut, runCut } from '#src/voxel/cut.ts';
 import type { Kernel } from '#src/voxel/kernels/contract.ts';
 import { createFastKernel } from '#src/voxel/kernels/fast/kernel.ts';
 import type { CutSpec } from '#src/voxel/model.ts';
@@ -21,6 +21,14 @@ export interface SteadyCut {
   readonly overlap: number;
   /** Arithmetic mean roughness of the flat floor, or of the strip where there is one, every 5 um of depth (m). */
   readonly sa: number;
+}
+
+/** A cut run to its end. */
+export function finishedCut(spec: CutSpec): Cut {
+  const cut = makeCut(spec);
+  const runner = serialRunner(createFastKernel(), cut.model, cut.state);
+  while (!isDone(cut.model, cut.state)) runCut(cut, runner, 1000);
+  return cut;
 }
 
 /** Cuts to the depth asked for and averages from `from` (m) on. */

@@ -256,3 +256,67 @@ export function demoField(size: FieldSize = DEMO_SIZE, pocket: DemoPocket = DEMO
     age: (x, y, z) => Math.round(Math.min(255, 60 + (reachAt(x, y, z) - 12e-6) * 6e6)),
   });
 }
+
+/** The union of what several forms remove. */
+export function together(...forms: readonly Form[]): Form {
+  return (x, y, z) => Math.min(...forms.map((form) => form(x, y, z)));
+}
+
+/** A form moved across. */
+export function moved(form: Form, dx: number, dy: number): Form {
+  return (x, y, z) => form(x - dx, y - dy, z);
+}
+
+/** A round hole with a flat floor. */
+export function roundHole(radius: number, depth: number): Form {
+  return (x, y, z) => Math.max(Math.sqrt(x * x + y * y) - radius, z - depth);
+}
+
+/** A large round hole with a smaller one running ahead of it. */
+export function steppedHole(large: readonly [number, number], pilot: readonly [number, number]): Form {
+  return together(roundHole(...large), roundHole(...pilot));
+}
+
+/** Scallops round the rim of a hole, on the face z = `face`; the widest, at `at` (rad), is `largest` (m) wide. */
+export function scallops(radius: number, face: number, largest: number, at = 0): Form {
+  const random = seeded(5);
+  const chips = Array.from({ length: 60 }, (_, n): Chip => {
+    const width = n === 0 ? largest : largest * (0.1 + 0.6 * random() ** 3);
+    const angle = n === 0 ? at : 2 * Math.PI * random();
+    const ball = 1.3 * width;
+    const r = radius + width - ball;
+    return { x: r * Math.cos(angle), y: r * Math.sin(angle), radius: ball, drop: 0.42 };
+  });
+  return (x, y, z) => {
+    const rim = Math.abs(Math.sqrt(x * x + y * y) - radius);
+    if (rim > 3 * largest || Math.abs(z - face) > 2 * largest) return Math.max(rim - largest, largest) * 0.42;
+    return chipForm(chips, x, y, z - face);
+  };
+}
+
+/** A hole through a plate, chipped at both faces. Below the plate there is air, or work where `backed`. */
+export function throughHole(
+  hole: { readonly radius: number; readonly thickness: number; readonly exitChip: number },
+  backed: boolean,
+): Form {
+  const { radius, thickness, exitChip } = hole;
+  const bore = roundHole(radius, backed ? thickness : 2 * thickness);
+  const chips = [scallops(radius, 0, 0.5 * exitChip, 2), scallops(radius, thickness, exitChip)];
+  const pierced = together(bore, ...chips);
+  if (!backed) return (x, y, z) => Math.min(pierced(x, y, z), thickness - z);
+  return (x, y, z) => Math.max(pierced(x, y, z), z - thickness);
+}
+
+/** Shallow dents on everything a form removes: `depth` (m) at most. */
+export function roughened(form: Form, depth = 6e-6): Form {
+  const n = 256;
+  const span = 1e-3;
+  const map = dents(n, span, 9000, 11);
+  const share = depth / 15e-6;
+  const wrap = (value: number): number => ((((value / span) % 1) + 1) % 1) * (n - 1);
+  return (x, y, z) => {
+    const at = form(x, y, z);
+    if (Math.abs(at) > 40e-6) return at;
+    return at - 0.6 * share * bilinear(map, n, wrap(x + 0.7 * y + 0.3 * z), wrap(z + 0.4 * y - 0.2 * x));
+  };
+}

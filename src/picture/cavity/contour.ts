@@ -7,12 +7,18 @@ export interface CutCurve {
   readonly x: Float64Array;
   readonly z: Float64Array;
   readonly closed: boolean;
+  /** Pieces of work that the plane cuts apart from the rest, as between two holes whose exit chips meet; of the main curve. */
+  readonly loose?: readonly CutCurve[];
 }
+
+/** Solid fraction at which the surface lies (in 255ths). */
+const HALF = 127.5;
 
 /** Solid fraction less one half (in 255ths) on the cutting plane: columns -1 .. nx, rows -1 .. nz of voxel centres. */
 function cutPlane(
   grid: Grid,
   yCut: number,
+  exit: number,
 ): { readonly values: Float32Array; readonly width: number; readonly height: number } {
   const { field } = grid;
   const width = field.nx + 2;
@@ -21,12 +27,15 @@ function cutPlane(
   const j0 = Math.floor(v);
   const share = v - j0;
   const values = new Float32Array(width * height);
-  for (let k = 0; k < height; k++) {
+  // rows that reach beyond the far face count as work: the line runs along that face, whatever is stored beneath it
+  const rows = Math.min(height, 1 + Math.max(0, Math.floor((exit - field.z0) / field.pitch + 0.51)));
+  values.fill(HALF, rows * width);
+  for (let k = 0; k < rows; k++) {
     for (let i = 0; i < width; i++) {
       const near = fractionAt(grid, i + PAD - 1, j0, k + PAD - 1);
       const far = share === 0 ? near : fractionAt(grid, i + PAD - 1, j0 + 1, k + PAD - 1);
       // never exactly zero, so that every crossing lies inside an edge
-      values[k * width + i] = near + share * (far - near) - 127.5 || 1e-3;
+      values[k * width + i] = near + share * (far - near) - HALF || 1e-3;
     }
   }
   return { values, width, height };
@@ -92,12 +101,26 @@ function curveOf(edges: readonly number[], tracing: Tracing, field: BrickField, 
   return { x, z, closed };
 }
 
+/** Voxels above the far face within which a line is taken to lie on it. */
+const AT_FACE = 1.6;
+
+/** The curve with everything at the far face or beyond laid on that face. */
+function endedAt(curve: CutCurve, exit: number, pitch: number): CutCurve {
+  return { ...curve, z: curve.z.map((z) => (z > exit - AT_FACE * pitch ? exit : z)) };
+}
+
 /**
  * Curves in which the plane y = yCut (m) cuts the surface, by marching squares on the bilinear field (Lorensen and Cline
- * 1987 in the plane; from memory). Open ones first: the entry face and the cavity as one line from left to right.
+ * 1987 in the plane; from memory). Open ones first: the entry face and the cavity as one line from left to right. Of a cut
+ * that goes through a work `exit` (m) thick the curves run along the far face where the work is open.
  */
-export function cutCurves(field: BrickField, yCut: number, grid: Grid = makeGrid(field)): CutCurve[] {
-  const { values, width, height } = cutPlane(grid, yCut);
+export function cutCurves(
+  field: BrickField,
+  yCut: number,
+  grid: Grid = makeGrid(field),
+  exit = Number.POSITIVE_INFINITY,
+): CutCurve[] {
+  const { values, width, height } = cutPlane(grid, yCut, exit);
   const tracing: Tracing = { values, width, next: new Map() };
   for (let k = 0; k + 1 < height; k++) for (let i = 0; i + 1 < width; i++) linkCell(tracing, i, k);
   const { next } = tracing;
@@ -117,16 +140,49 @@ export function cutCurves(field: BrickField, yCut: number, grid: Grid = makeGrid
     }
     curves.push(curveOf(edges, tracing, field, edge === start));
   }
-  return curves;
+  return Number.isFinite(exit) ? curves.map((curve) => endedAt(curve, exit, field.pitch)) : curves;
 }
 
-/** The open curve from the left border to the right: entry face, wall, floor, wall, entry face. Undefined without work. */
+/** Twice the area that a closed curve encloses (m2), positive where that is work: work lies to its right, z down. */
+function doubleArea({ x, z }: CutCurve): number {
+  let sum = 0;
+  for (let n = 0; n < x.length; n++) {
+    const m = (n + 1) % x.length;
+    sum += (x[n] as number) * (z[m] as number) - (x[m] as number) * (z[n] as number);
+  }
+  return sum;
+}
+
+/** Edge of the smallest loose piece that is shown (m): smaller ones are crumbs of the voxels. */
+const CRUMB = 50e-6;
+
+/**
+ * The open curve from the left border to the right: entry face, wall, floor, wall, entry face; with the pieces of work apart
+ * from it. Undefined without work.
+ */
 export function mainCurve(curves: readonly CutCurve[]): CutCurve | undefined {
   let longest: CutCurve | undefined;
   for (const curve of curves) {
     if (!curve.closed && (longest === undefined || curve.x.length > longest.x.length)) longest = curve;
   }
-  return longest;
+  const loose = curves.filter((curve) => curve.closed && doubleArea(curve) > 2 * CRUMB ** 2);
+  return longest && loose.length > 0 ? { ...longest, loose } : longest;
+}
+
+/** The points of a curve as x0, z0, x1, z1, ... (m), back to the first where it is closed. */
+export function curveLine({ x, z, closed }: CutCurve): Float64Array {
+  const count = x.length + (closed ? 1 : 0);
+  const line = new Float64Array(2 * count);
+  for (let n = 0; n < count; n++) {
+    line[2 * n] = x[n % x.length] as number;
+    line[2 * n + 1] = z[n % x.length] as number;
+  }
+  return line;
+}
+
+/** The lines of a main curve and of the pieces apart from it, as `curveLine`. */
+export function curveLines(curve: CutCurve): Float64Array[] {
+  return [curve, ...(curve.loose ?? [])].map(curveLine);
 }
 
 /** The stretch of a curve within `reach` (m) of its point nearest to (x, z), as x0, z0, x1, z1, ... in m. */

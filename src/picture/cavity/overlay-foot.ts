@@ -10,6 +10,9 @@ import type { SectionView } from './view.ts';
 /** Height of the caption strip, 1/96 inch. */
 export const CAPTION_HEIGHT = 34;
 
+/** Height of the backing drawn beneath the work, 1/96 inch. */
+export const BACKING_DRAWN = 40;
+
 const LEGEND_STOPS = 32;
 
 /** What the colours mean: name, both ends, unit. */

@@ -1,7 +1,6 @@
-import { MILLIMETRES_PER_METRE } from '#src/base/units.ts';
-import { drawCornerDetail, drawRing } from '../detail.ts';
+import { drawRing } from '../detail.ts';
 import { drawScaleBar, drawWidth } from '../dimension.ts';
-import { figure, inMm, inUm, shortLength } from '../figures.ts';
+import { inMm, inUm, shortLength } from '../figures.ts';
 import { LIGHT, type Palette, PEN } from '../palette.ts';
 import {
   asides,
@@ -15,11 +14,14 @@ import {
   type Stroke,
 } from '../sheet.ts';
 import { element, pathData, svgDocument } from '../svg.ts';
-import { oneTwoFive, ticks } from '../ticks.ts';
-import { type ToolOutline, toolProfile } from '../tool.ts';
-import { type CutCurve, stretchNear } from './contour.ts';
-import { CAPTION_HEIGHT, drawCaption, drawLegend } from './overlay-foot.ts';
-import { curveInPicture } from './render.ts';
+import { type ExitFigures, strokesAbove } from '../through.ts';
+import { oneTwoFive } from '../ticks.ts';
+import { sideAt, type ToolOutline, toolProfiles } from '../tool.ts';
+import { type CutCurve, curveLine } from './contour.ts';
+import { drawBacking, drawExit } from './overlay-exit.ts';
+import { BACKING_DRAWN, CAPTION_HEIGHT, drawCaption, drawLegend } from './overlay-foot.ts';
+import { drawCorner, drawRuler } from './overlay-marks.ts';
+import { curveInPicture, lineInPicture } from './render.ts';
 import type { Shading } from './shade.ts';
 import { type Margins, type SectionView, toPicture } from './view.ts';
 
@@ -27,13 +29,25 @@ import { type Margins, type SectionView, toPicture } from './view.ts';
 export interface CavityLabels {
   /** Round outlines carry the diameter sign. */
   readonly round: boolean;
-  /** Middle of the cavity across the picture (m). */
+  /** Middle across the picture of the cavity, of the dimensioned island where there are several (m). */
   readonly centre: number;
+  /** Middles of all islands the plane cuts, left to right (m); left out, `centre` alone. */
+  readonly centres?: readonly number[];
+  /** From the leftmost wall to the rightmost (m); left out, the entry size about the centre. */
+  readonly extent?: { readonly from: number; readonly to: number };
   /** How far the cavity reaches behind the cutting plane (m): the entry size's line stands clear above it. */
   readonly behind: number;
   readonly entrySize: number;
+  /** Of the pilot where there is a shoulder; NaN where there is none to measure. */
   readonly floorSize: number;
+  /** Depth to the tip; the thickness where the cut goes through. */
   readonly depth: number;
+  /** The floor is no plane: neither its size nor a corner is drawn. */
+  readonly shaped?: boolean;
+  /** The shoulder of a stepped hole. */
+  readonly shoulder?: { readonly depth: number };
+  /** The cut goes through. */
+  readonly exit?: ExitFigures;
   /** Depth wanted; drawn where it is not reached yet. */
   readonly wantedDepth: number;
   /** Widest chip of the rim and where it lies on the entry face. */
@@ -73,17 +87,23 @@ export interface Overlay {
   readonly scaleBar: { readonly length: number; readonly x0: number; readonly x1: number };
 }
 
-const DETAIL_RADIUS = 60;
+/** Least length of the scale bar before it is rounded down to 1, 2 or 5, 1/96 inch. */
+const SHORTEST_BAR = 80;
 
 /** Room the labels need round the cavity, in pixels. */
-export function overlayMargins(unit = 1): Margins {
-  return { left: 190 * unit, right: 200 * unit, top: 62 * unit, bottom: (96 + CAPTION_HEIGHT) * unit };
+export function overlayMargins(unit = 1, what: { readonly backing?: boolean; readonly gang?: boolean } = {}): Margins {
+  const top = what.gang ? 86 : 62;
+  const bottom = 96 + CAPTION_HEIGHT + (what.backing ? BACKING_DRAWN : 0);
+  return { left: 190 * unit, right: 200 * unit, top: top * unit, bottom: bottom * unit };
 }
 
-interface Drawing {
+/** What is drawn, with where its main lines lie. */
+export interface OverlayDrawing {
   readonly sheet: Sheet;
   readonly view: SectionView;
   readonly labels: CavityLabels;
+  /** From the leftmost wall to the rightmost (m), and in the picture. */
+  readonly extent: { readonly from: number; readonly to: number };
   readonly left: number;
   readonly right: number;
   /** Picture heights of the farthest rim, the entry face and the floor. */
@@ -92,11 +112,7 @@ interface Drawing {
   readonly floor: number;
 }
 
-function picturePoints(view: SectionView, points: ArrayLike<number>): number[] {
-  return Array.from(points, (value, n) => (value - (n % 2 === 0 ? view.left : view.top)) / view.pixel);
-}
-
-function drawSizes(drawing: Drawing): void {
+function drawSizes(drawing: OverlayDrawing): void {
   const { sheet, view, labels, face, floor } = drawing;
   const { unit } = sheet;
   const sign = labels.round ? '\u00d8\u2009' : '';
@@ -110,52 +126,26 @@ function drawSizes(drawing: Drawing): void {
     origins: [face, face],
     text: `entry ${sign}${inMm(labels.entrySize)}`,
   });
+  const { centres = [] } = labels;
+  if (centres.length > 1) {
+    const [from, to] = centres.slice(0, 2).map((x) => (x - view.left) / view.pixel) as [number, number];
+    const text = `pitch ${inMm((centres[1] as number) - (centres[0] as number))}`;
+    drawWidth(sheet, { from, to, at: drawing.back - 60 * unit, origins: [face, face], text, bare: true });
+  }
+  if (labels.shaped || labels.exit !== undefined || !Number.isFinite(labels.floorSize)) return;
   drawWidth(sheet, {
     ...span(labels.floorSize),
     at: floor + 28 * unit,
     origins: [floor, floor],
-    text: `floor ${sign}${inMm(labels.floorSize)}`,
+    text: `${labels.shoulder === undefined ? 'floor' : 'pilot'} ${sign}${inMm(labels.floorSize)}`,
   });
 }
 
-function drawRuler(drawing: Drawing): void {
-  const { sheet, view, labels, face, floor } = drawing;
-  const { unit, palette } = sheet;
-  const deepest = Math.max(labels.depth, labels.wantedDepth);
-  const x = drawing.left - 76 * unit;
-  const down = (z: number): number => toPicture(view, 0, view.yCut, z).py;
-  const pen = { colour: palette.ink, width: PEN.dimension };
-  const major = ticks(0, deepest * MILLIMETRES_PER_METRE, Math.max(2, Math.min(6, (floor - face) / (44 * unit))));
-  const minor = ticks(0, deepest * MILLIMETRES_PER_METRE, major.values.length * 5);
-  drawLine(sheet, [x, face, x, down(deepest)], { ...pen, width: 1.2 });
-  for (const mm of minor.values) drawLine(sheet, [x - 5 * unit, down(mm * 1e-3), x, down(mm * 1e-3)], pen);
-  for (const mm of major.values) {
-    const y = down(mm * 1e-3);
-    drawLine(sheet, [x - 9 * unit, y, x, y], { ...pen, width: 1.2 });
-    const at = mm === 0 ? y - 7 * unit : y + 4 * unit;
-    askLabel(sheet, figure(mm, Math.max(1, major.decimals)), [{ x: x - 14 * unit, y: at, anchor: 'end' }]);
-  }
-  askLabel(
-    sheet,
-    'mm',
-    [
-      { x: x - 14 * unit, y: down(deepest) + 18 * unit, anchor: 'end' },
-      { x: x + 8 * unit, y: down(deepest) + 4 * unit },
-    ],
-    { colour: palette.ink2, size: 11 },
-  );
-  // the depth reached, pointed at from the cavity's side
-  const y = down(labels.depth);
-  const tip = [x + 3 * unit, y, x + 11 * unit, y - 4.5 * unit, x + 11 * unit, y + 4.5 * unit];
-  sheet.parts.push(element('path', { d: pathData(tip, true), fill: palette.ink }));
-  askLabel(sheet, inMm(labels.depth), [{ x: x + 14 * unit, y: y + 4.5 * unit }], { weight: 600, size: 13 });
-}
-
-function drawStillToCut(drawing: Drawing): void {
+function drawStillToCut(drawing: OverlayDrawing): void {
   const { sheet, view, labels, floor } = drawing;
   const { unit, palette } = sheet;
   const left = labels.wantedDepth - labels.depth;
-  if (left < 0.5e-6) return;
+  if (left < 0.5e-6 || labels.exit !== undefined) return;
   const wanted = toPicture(view, 0, view.yCut, labels.wantedDepth).py;
   const pen = { colour: palette.ink2, width: PEN.dimension, dash: PEN.nominalDash };
   drawLine(sheet, [drawing.left, floor, drawing.left, wanted, drawing.right, wanted, drawing.right, floor], pen);
@@ -164,30 +154,36 @@ function drawStillToCut(drawing: Drawing): void {
   });
 }
 
-function drawTool(drawing: Drawing): void {
+function drawTool(drawing: OverlayDrawing): void {
   const { sheet, view, labels, face } = drawing;
   const { tool } = labels;
   if (tool === undefined) return;
   const { unit, palette } = sheet;
   const above = -0.115 * labels.entrySize;
-  const points = picturePoints(view, toolProfile(tool, above));
-  const first = [points[0] as number, points[1] as number] as const;
-  const last = [points[points.length - 2] as number, points[points.length - 1] as number] as const;
-  // a break line closes the shank
-  const wave: number[] = [];
-  for (let n = 0; n <= 32; n++) {
-    const share = n / 32;
-    wave.push(last[0] + share * (first[0] - last[0]), last[1] + 3.5 * unit * Math.sin(2 * Math.PI * share));
+  const profiles = toolProfiles(tool, above);
+  for (const profile of profiles) {
+    const points = lineInPicture(view, profile);
+    const first = [points[0] as number, points[1] as number] as const;
+    const last = [points[points.length - 2] as number, points[points.length - 1] as number] as const;
+    // a break line closes the shank
+    const wave: number[] = [];
+    for (let n = 0; n <= 32; n++) {
+      const share = n / 32;
+      wave.push(last[0] + share * (first[0] - last[0]), last[1] + 3.5 * unit * Math.sin(2 * Math.PI * share));
+    }
+    drawLine(sheet, [...points, ...wave], {
+      colour: palette.ink,
+      width: 1.1,
+      dash: PEN.toolDash,
+      casing: palette.paper,
+      closed: true,
+    });
   }
-  drawLine(sheet, [...points, ...wave], {
-    colour: palette.ink,
-    width: 1.1,
-    dash: PEN.toolDash,
-    casing: palette.paper,
-    closed: true,
-  });
+  const [left] = profiles;
+  if (left === undefined) return;
   const text = tool.worn > 0 ? `tool, worn ${inMm(tool.worn)} mm` : 'tool';
-  const target = { x: first[0], y: Math.min(face - 12 * unit, first[1] + 0.35 * (face - first[1])), gap: 0 };
+  const y = Math.min(face - 12 * unit, face + (0.65 * above) / view.pixel);
+  const target = { x: (sideAt(left, view.top + y * view.pixel, 'left') - view.left) / view.pixel, y, gap: 0 };
   const ways = [
     { dx: -26 * unit, dy: -18 * unit },
     { dx: -40 * unit, dy: -30 * unit },
@@ -196,7 +192,7 @@ function drawTool(drawing: Drawing): void {
   askLabel(sheet, text, asides(sheet, target, { text, style: {} }, ways));
 }
 
-function drawChip(drawing: Drawing): void {
+function drawChip(drawing: OverlayDrawing): void {
   const { sheet, view, labels } = drawing;
   const { chip } = labels;
   if (chip === undefined) return;
@@ -205,7 +201,13 @@ function drawChip(drawing: Drawing): void {
   const text = `largest chip ${inUm(chip.width)} \u00b5m${behind ? '' : ', in the half cut away'}`;
   const style = { weight: 600 } as const;
   if (!behind) {
-    askLabel(sheet, text, [{ x: 16 * unit, y: 30 * unit }], style);
+    const ends = [
+      { x: 16 * unit, anchor: 'start' },
+      { x: view.width - 16 * unit, anchor: 'end' },
+    ] as const;
+    const rows = [30, 50, 70, view.height / unit - CAPTION_HEIGHT - 18];
+    const places = rows.flatMap((y) => ends.map((end) => ({ ...end, y: y * unit })));
+    askLabel(sheet, text, places, style);
     return;
   }
   const { px, py } = toPicture(view, chip.x, chip.y, 0);
@@ -218,44 +220,9 @@ function drawChip(drawing: Drawing): void {
   askLabel(sheet, text, asides(sheet, { x: px, y: py, gap: radius }, { text, style }, ways), style);
 }
 
-function drawCorner(drawing: Drawing): void {
-  const { sheet, view, labels, floor } = drawing;
-  const { outline } = labels;
-  if (outline === undefined) return;
-  const { unit } = sheet;
-  const radius = DETAIL_RADIUS * unit;
-  const centre = [
-    view.width - radius - 26 * unit,
-    Math.max(drawing.face + radius + 12 * unit, floor - radius * 0.6),
-  ] as const;
-  const room = 14 * unit;
-  const times = Math.max(2, Math.round(radius / room));
-  const scale = times / view.pixel;
-  // the middle of the ring lies inside the corner, so that the tool's edge shows
-  const shift = (0.42 * radius) / scale;
-  const x = labels.centre + labels.floorSize / 2 - shift;
-  const z = labels.depth - shift;
-  const mark = toPicture(view, x, view.yCut, z);
-  const reach = (2.2 * radius) / scale;
-  const detail = {
-    x,
-    z,
-    outline: stretchNear(outline, x + shift, z + shift, reach),
-    centre,
-    radius,
-    scale,
-    mark: [mark.px, mark.py] as const,
-    markRadius: radius / times,
-    id: 'corner',
-    ...(labels.tool === undefined ? {} : { tool: labels.tool }),
-    ...(labels.cracks === undefined ? {} : { cracks: labels.cracks }),
-  };
-  drawCornerDetail(sheet, detail, `corner \u00d7${times}`);
-}
-
-function drawCracks(drawing: Drawing): void {
+function drawCracks(drawing: OverlayDrawing): void {
   const { sheet, view, labels } = drawing;
-  const strokes = picturePoints(view, labels.cracks ?? []);
+  const strokes = lineInPicture(view, labels.cracks ?? []);
   let data = '';
   for (let n = 0; n + 3 < strokes.length; n += 4) data += pathData(strokes.slice(n, n + 4));
   if (data === '') return;
@@ -263,36 +230,63 @@ function drawCracks(drawing: Drawing): void {
   sheet.parts.push(element('path', { d: data, fill: 'none', stroke: palette.ink2, 'stroke-width': 0.6 * unit }));
 }
 
+/** The lines the picture draws of the cut outline, for labels to keep clear of. */
+function outlineInPicture(view: SectionView, { outline, exit, depth }: CavityLabels): ArrayLike<number>[] {
+  if (outline === undefined) return [];
+  if (exit === undefined) return [curveInPicture(view, outline)];
+  const ends = { from: view.left, to: view.left + view.width * view.pixel };
+  const loose = (outline.loose ?? []).map((piece) => curveInPicture(view, piece));
+  const { lines, face } = strokesAbove([ends.from, 0, ...curveLine(outline), ends.to, 0], depth, ends);
+  const faces = face.map(({ from, to }) => [from, depth, to, depth]);
+  return [...loose, ...[...lines, ...faces].map((line) => lineInPicture(view, line))];
+}
+
+function drawCentres({ sheet, view, labels, back, floor }: OverlayDrawing): void {
+  const { unit, palette } = sheet;
+  const { centres = [labels.centre], exit } = labels;
+  const bottom = toPicture(view, 0, view.yCut, exit ? labels.depth : Math.max(labels.depth, labels.wantedDepth)).py;
+  const foot = Math.max(floor + (exit?.backing ? 44 + BACKING_DRAWN : 44) * unit, bottom + 14 * unit);
+  for (const centre of centres) {
+    const x = toPicture(view, centre, view.yCut, 0).px;
+    drawLine(sheet, [x, back - (centres.length > 1 ? 66 : 52) * unit, x, foot], {
+      colour: palette.ink2,
+      width: PEN.dimension,
+      dash: PEN.centreDash,
+    });
+  }
+}
+
 /** Dimensions, ruler, scale bar, marks, legend and caption over a picture of the same view. */
 export function cavityOverlay(view: SectionView, labels: CavityLabels, options: OverlayOptions = {}): Overlay {
   const unit = options.unit ?? 1;
   const sheet = newSheet(options.palette ?? LIGHT, { x: 0, y: 0, width: view.width, height: view.height }, unit);
-  const drawing: Drawing = {
+  const half = labels.entrySize / 2;
+  const extent = labels.extent ?? { from: labels.centre - half, to: labels.centre + half };
+  const drawing: OverlayDrawing = {
     sheet,
     view,
     labels,
-    left: toPicture(view, labels.centre - labels.entrySize / 2, view.yCut, 0).px,
-    right: toPicture(view, labels.centre + labels.entrySize / 2, view.yCut, 0).px,
+    extent,
+    left: toPicture(view, extent.from, view.yCut, 0).px,
+    right: toPicture(view, extent.to, view.yCut, 0).px,
     back: toPicture(view, 0, view.yCut + labels.behind, 0).py,
     face: toPicture(view, 0, view.yCut, 0).py,
     floor: toPicture(view, 0, view.yCut, labels.depth).py,
   };
-  if (labels.outline !== undefined) keepClear(sheet, curveInPicture(view, labels.outline));
+  if (labels.outline !== undefined) {
+    for (const line of outlineInPicture(view, labels)) keepClear(sheet, line);
+  }
+  if (labels.exit?.backing) drawBacking(drawing);
   drawCracks(drawing);
   drawStillToCut(drawing);
-  const middle = toPicture(view, labels.centre, view.yCut, 0).px;
-  const bottom = toPicture(view, 0, view.yCut, Math.max(labels.depth, labels.wantedDepth)).py;
-  drawLine(sheet, [middle, drawing.back - 52 * unit, middle, Math.max(drawing.floor + 44 * unit, bottom + 14 * unit)], {
-    colour: sheet.palette.ink2,
-    width: PEN.dimension,
-    dash: PEN.centreDash,
-  });
+  drawCentres(drawing);
   drawTool(drawing);
   drawSizes(drawing);
+  if (labels.exit !== undefined) drawExit(drawing, labels.exit);
   drawRuler(drawing);
   drawChip(drawing);
   drawCorner(drawing);
-  const length = oneTwoFive(0.3 * labels.entrySize);
+  const length = oneTwoFive(Math.max(0.3 * (extent.to - extent.from), SHORTEST_BAR * unit * view.pixel));
   const barY = view.height - (CAPTION_HEIGHT + 22) * unit;
   drawScaleBar(sheet, { x: drawing.left, y: barY, length: length / view.pixel, text: shortLength(length) });
   drawLegend(sheet, { right: drawing.right, y: barY }, labels, options);

@@ -1,9 +1,10 @@
 import type { BrickField } from '#src/voxel/bricks.ts';
 import { LIGHT, type Palette, PEN, rgbOf } from '../palette.ts';
-import { type CutCurve, cutCurves } from './contour.ts';
-import { type Grid, makeGrid } from './grid.ts';
+import { strokesAbove } from '../through.ts';
+import { type CutCurve, curveLine, cutCurves } from './contour.ts';
+import { type Grid, makeGrid, PAD } from './grid.ts';
 import { CUT_FACE, ENTRY_FACE, look, newSight, type Sight, SURFACE } from './ray.ts';
-import { makeShader, type Shader, type Shading, shadeSurface, untouched } from './shade.ts';
+import { makeShader, type Shader, type Shading, shadePlane, shadeSurface, untouched } from './shade.ts';
 import { type Coverage, coverLine, newCoverage } from './stroke.ts';
 import type { SectionView } from './view.ts';
 
@@ -14,6 +15,8 @@ export interface RenderStyle {
   readonly unit?: number;
   /** Thickness of the work (m): paper shows below it. Left out, the work fills the picture. */
   readonly thickness?: number;
+  /** The cut goes through `thickness`: height of the backing drawn beneath (m), 0 for air. */
+  readonly through?: { readonly backing: number };
   /** Rows drawn between two yields; 16 when left out. */
   readonly rows?: number;
 }
@@ -34,7 +37,9 @@ interface Job {
   readonly cutTone: readonly [number, number, number];
   readonly faceTone: readonly [number, number, number];
   readonly paper: readonly [number, number, number];
+  readonly backingTone: readonly [number, number, number];
   readonly thickness: number;
+  readonly through: RenderStyle['through'];
   readonly picture: Picture;
   /** What each pixel's middle shows and how far into the sheet (voxels): where edges need more than one ray. */
   readonly kinds: Uint8Array;
@@ -42,20 +47,45 @@ interface Job {
 }
 
 const PAPER = 3;
+const BACKING = 4;
+
+/** Voxels above the far face from which a line of sight is taken to have left the work. */
+const AT_FACE = 0.75;
+
+/** Where a line of sight has passed the far face: paper, or the backing there, into job.rgb. */
+function traceBeyond(job: Job): number {
+  const { sight, grid, view } = job;
+  if (!job.through?.backing) {
+    job.rgb.set(job.paper);
+    return PAPER;
+  }
+  const face = PAD + (job.thickness - grid.field.z0) / grid.field.pitch;
+  const back = (sight.k - face) / view.rise;
+  sight.run -= back;
+  sight.j -= back;
+  sight.k = face;
+  shadePlane(job.rgb, job.shader, sight, job.backingTone);
+  return BACKING;
+}
 
 /** Colour through one picture point (pixels, may be fractions) into job.rgb; returns what is seen there. */
 function trace(job: Job, px: number, py: number): number {
   const { view, sight, rgb } = job;
   const down = view.top + py * view.pixel;
   if (down > job.thickness) {
-    rgb.set(job.paper);
+    const backed = down < job.thickness + (job.through?.backing ?? 0);
+    rgb.set(backed ? job.backingTone : job.paper);
     sight.run = 0;
-    return PAPER;
+    return backed ? BACKING : PAPER;
   }
   look(job.grid, view, view.left + px * view.pixel, down, sight);
   if (sight.kind === CUT_FACE) {
     rgb.set(job.cutTone);
     return CUT_FACE;
+  }
+  if (job.through !== undefined && sight.kind === SURFACE) {
+    const { field } = job.grid;
+    if (field.z0 + (sight.k - PAD + AT_FACE) * field.pitch > job.thickness) return traceBeyond(job);
   }
   const face = sight.kind === ENTRY_FACE ? 1 : untouched(job.grid, sight);
   if (face === 1) {
@@ -117,6 +147,11 @@ function smoothRow(job: Job, row: number): void {
   }
 }
 
+/** Points x0, z0, ... (m) of the cut face in picture pixels. */
+export function lineInPicture(view: SectionView, line: ArrayLike<number>): number[] {
+  return Array.from(line, (value, n) => (value - (n % 2 === 0 ? view.left : view.top)) / view.pixel);
+}
+
 /** A cut curve in picture pixels; open ones run on to both sides of the picture. */
 export function curveInPicture(view: SectionView, curve: CutCurve): Float64Array {
   const count = curve.x.length;
@@ -138,6 +173,21 @@ export function curveInPicture(view: SectionView, curve: CutCurve): Float64Array
   points[2 * count + 2] = Math.max(view.width, across(count - 1)) + 4;
   points[2 * count + 3] = down(count - 1);
   return points;
+}
+
+/** The cut outline in picture pixels: entry face, walls and floor, and the far face where the picture shows it. */
+function cutLines(job: Job): ArrayLike<number>[] {
+  const { view, grid, thickness, through } = job;
+  const curves = cutCurves(grid.field, view.yCut, grid, through === undefined ? undefined : thickness);
+  const main = curves.find(({ closed }) => !closed);
+  const inPicture = curves.filter((curve) => through === undefined || curve !== main);
+  const lines: ArrayLike<number>[] = inPicture.map((curve) => curveInPicture(view, curve));
+  const margin = 4 * view.pixel;
+  const ends = { from: view.left - margin, to: view.left + view.width * view.pixel + margin };
+  const whole = main === undefined || through === undefined ? [] : [ends.from, 0, ...curveLine(main), ends.to, 0];
+  const seen = Number.isFinite(thickness) ? strokesAbove(whole, thickness, ends) : { lines: [], face: [] };
+  const pieces = [...seen.lines, ...seen.face.map(({ from, to }) => [from, thickness, to, thickness])];
+  return [...lines, ...pieces.map((piece) => lineInPicture(view, piece))];
 }
 
 function inkOutline(picture: Picture, coverage: Coverage, ink: readonly [number, number, number]): void {
@@ -176,7 +226,9 @@ export function* renderSteps(
     cutTone: rgbOf(palette.glass),
     faceTone: rgbOf(palette.glassTop),
     paper: rgbOf(palette.paper),
+    backingTone: rgbOf(palette.plotGround),
     thickness: style.thickness ?? Number.POSITIVE_INFINITY,
+    through: style.through,
     picture,
     kinds: new Uint8Array(width * height),
     runs: new Float32Array(width * height),
@@ -190,9 +242,7 @@ export function* renderSteps(
     if (row % rows === rows - 1) yield 0.8 + (0.2 * row) / height;
   }
   const coverage = newCoverage(width, height);
-  for (const curve of cutCurves(field, view.yCut, grid)) {
-    coverLine(coverage, curveInPicture(view, curve), PEN.cut * unit);
-  }
+  for (const line of cutLines(job)) coverLine(coverage, line, PEN.cut * unit);
   inkOutline(picture, coverage, rgbOf(palette.ink));
   return picture;
 }

@@ -131,6 +131,21 @@ export function shadeSurface(out: Float64Array, shader: Shader, sight: Sight): v
   for (let c = 0; c < 3; c++) out[c] = Math.min(255, (colour[c] as number) * factor);
 }
 
+/** Colour 0..255 of a level plane of one tone at the sight, into out[0..2]: what lies beneath the work. */
+export function shadePlane(
+  out: Float64Array,
+  shader: Shader,
+  sight: Sight,
+  tone: readonly [number, number, number],
+): void {
+  const { normal } = shader;
+  normal[0] = 0;
+  normal[1] = 0;
+  normal[2] = -1;
+  const light = Math.min(brightness(shader, sight), 1.03);
+  for (let c = 0; c < 3; c++) out[c] = (tone[c] as number) * light;
+}
+
 /** Whether the surface here is the untouched entry face: 1 on it, falling to 0 two thirds of a voxel below. */
 export function untouched(grid: Grid, sight: Sight): number {
   const face = PAD - grid.field.z0 / grid.field.pitch;

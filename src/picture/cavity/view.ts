@@ -1,5 +1,5 @@
 import type { BrickField } from '#src/voxel/bricks.ts';
-import { ALL_EMPTY, ALL_SOLID, BRICK_VOXELS } from '#src/voxel/bricks.ts';
+import { ALL_SOLID, BRICK_VOXELS } from '#src/voxel/bricks.ts';
 
 /**
  * The parallel view of a half-section: the work is cut by the plane y = yCut and the half behind it is shown, the cut
@@ -45,7 +45,8 @@ export interface CavityBounds {
   readonly depth: number;
 }
 
-function growByBrick(range: Float64Array, field: BrickField, brick: number, entry: number): void {
+function growByBrick(range: Float64Array, field: BrickField, brick: number, layers: number): void {
+  const entry = field.table[brick] as number;
   const bx = field.nx >> 3;
   const by = field.ny >> 3;
   const i0 = (brick % bx) * 8;
@@ -56,6 +57,7 @@ function growByBrick(range: Float64Array, field: BrickField, brick: number, entr
     const i = i0 + (n & 7);
     const j = j0 + ((n >> 3) & 7);
     const k = k0 + (n >> 6);
+    if (k >= layers) return;
     if (i < (range[0] as number)) range[0] = i;
     if (i > (range[1] as number)) range[1] = i;
     if (j < (range[2] as number)) range[2] = j;
@@ -64,13 +66,13 @@ function growByBrick(range: Float64Array, field: BrickField, brick: number, entr
   }
 }
 
-/** Extent of the voxels less than half solid; undefined where nothing has been removed. */
-export function cavityBounds(field: BrickField): CavityBounds | undefined {
+/** Extent of the voxels less than half solid, down to `thickness` (m); undefined where nothing has been removed. */
+export function cavityBounds(field: BrickField, thickness = Number.POSITIVE_INFINITY): CavityBounds | undefined {
+  const layers = Math.min(field.nz, Math.round((thickness - field.z0) / field.pitch + 0.5));
   const range = Float64Array.of(field.nx, -1, field.ny, -1, -1);
   for (let brick = 0; brick < field.table.length; brick++) {
     const entry = field.table[brick] as number;
-    if (entry === ALL_SOLID) continue;
-    growByBrick(range, field, brick, entry === ALL_EMPTY ? -1 : entry);
+    if (entry !== ALL_SOLID) growByBrick(range, field, brick, layers);
   }
   const [iMin, iMax, jMin, jMax, kMax] = range as unknown as [number, number, number, number, number];
   if (iMax < 0) return undefined;

@@ -18,10 +18,14 @@ const LABELS: CavityLabels = {
   caption: { title: 'Sensor pocket', grit: 'boron carbide F320', time: 17.1, seed: 1, version: '0.1.0' },
 };
 
+const OUT = { size: 2.99e-3, chip: { width: 200e-6, depth: 80e-6, side: 'right' }, backing: false } as const;
+
 function viewFor(width: number, labels: CavityLabels): SectionView {
   const half = labels.entrySize / 2;
-  const bounds = { xMin: -half, xMax: half, yMin: -half, yMax: half, depth: labels.wantedDepth };
-  const margins = overlayMargins(width / 1060);
+  const { from, to } = labels.extent ?? { from: -half, to: half };
+  const bounds = { xMin: from, xMax: to, yMin: -half, yMax: half, depth: labels.wantedDepth };
+  const what = { backing: labels.exit?.backing ?? false, gang: labels.centres !== undefined };
+  const margins = overlayMargins(width / 1060, what);
   return fitView({ width, height: naturalHeight(width, bounds, margins) }, bounds, margins, 0);
 }
 
@@ -70,6 +74,26 @@ test.each([
       tool: { ...LABELS.tool, width: 0.94e-3 },
     },
     1200,
+  ],
+  ['through', { ...LABELS, depth: 1e-3, exit: OUT }, 1600],
+  ['through, backed', { ...LABELS, depth: 1e-3, exit: { ...OUT, backing: true } }, 1600],
+  ['no plane floor', { ...LABELS, depth: 1e-3, shaped: true, floorSize: Number.NaN }, 1600],
+  ['stepped', { ...LABELS, depth: 1e-3, shoulder: { depth: 0.4e-3 }, floorSize: 1.5e-3 }, 1600],
+  [
+    'three islands',
+    {
+      ...LABELS,
+      depth: 1e-3,
+      behind: 0.6e-3,
+      entrySize: 1.2e-3,
+      floorSize: 1.19e-3,
+      centre: -2e-3,
+      centres: [-2e-3, 0, 2e-3],
+      extent: { from: -2.6e-3, to: 2.6e-3 },
+      chip: { width: 50e-6, x: -1.7e-3, y: 0.5e-3 },
+      tool: { ...LABELS.tool, width: 1.1e-3, centre: -2e-3 },
+    },
+    1600,
   ],
 ] as const)('labels touch neither lines nor each other: %s', (_name, labels, width) => {
   const view = viewFor(width, labels as CavityLabels);
