@@ -1,7 +1,9 @@
-import { lstat, mkdir, readdir, rename, rm, stat, writeFile } from 'node:fs/promises';
+import { lstat, mkdir, readdir, readFile, rename, rm, stat, writeFile } from 'node:fs/promises';
 import { dirname, join, resolve } from 'node:path';
+import { attachmentNames } from '#src/formats/job/attachments.ts';
 import { ARTEFACT_NAMES, type Artefact } from '#src/run/protocol.ts';
 import { CommandError, EXIT, reasonOf } from './exit.ts';
+import type { JobOnDisk } from './job-file.ts';
 
 /** Left beside the artefacts: the job as it was given; and while the folder is not whole, a word on why. */
 const JOB_COPY = 'job.json';
@@ -34,7 +36,9 @@ async function statusOf(path: string) {
 
 /** Refuses a folder that holds anything a cut did not write: replacing it would delete somebody's files. */
 async function checkReplaceable(path: string): Promise<void> {
-  const foreign = (await readdir(path)).filter((name) => !OWN_FILES.has(name));
+  const job = await readFile(join(path, JOB_COPY), 'utf8').catch(() => '');
+  const own = new Set([...OWN_FILES, ...attachmentNames(job)]);
+  const foreign = (await readdir(path)).filter((name) => !own.has(name));
   if (foreign.length === 0) return;
   const shown = foreign.slice(0, 3).join(', ') + (foreign.length > 3 ? ', ...' : '');
   throw new CommandError(
@@ -66,10 +70,10 @@ async function makeFolder(path: string): Promise<void> {
 }
 
 /**
- * Makes `OUT.partial/` ready to be written to, with a copy of the job in it.
+ * Makes `OUT.partial/` ready to be written to, with a copy of the job and of the files it names in it.
  * @throws CommandError when OUT exists (without force), holds somebody's files, or cannot be written
  */
-export async function openFolder(out: string, jobText: string, force: boolean): Promise<ResultFolder> {
+export async function openFolder(out: string, job: JobOnDisk, force: boolean): Promise<ResultFolder> {
   if (out === '') throw new CommandError(EXIT.badInput, '--out is empty. Name a folder for the result.');
   const path = resolve(out);
   const partial = `${path}.partial`;
@@ -80,7 +84,8 @@ export async function openFolder(out: string, jobText: string, force: boolean): 
   try {
     await rm(partial, { recursive: true, force: true });
     await makeFolder(partial);
-    await writeFile(join(partial, JOB_COPY), jobText);
+    await writeFile(join(partial, JOB_COPY), job.text);
+    for (const [name, bytes] of Object.entries(job.attachments)) await writeFile(join(partial, name), bytes);
     await writeFile(join(partial, UNFINISHED), 'This cut is running, or was ended without notice.\n');
   } catch (error) {
     await rm(partial, { recursive: true, force: true }).catch(() => {});

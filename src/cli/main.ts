@@ -77,6 +77,13 @@ function commandLine(finish: (code: number) => void): Command {
     .action(async (options) => finish(await (await import('./commands/libraries.ts')).libraries(options)));
 
   program
+    .command('validate')
+    .description('Hold the model against published values: one table, with what was fitted and what misses.')
+    .option('--write <file>', 'put the table into a Markdown file, between its markers')
+    .addOption(jsonOption())
+    .action(async (options) => finish(await (await import('./commands/validate.ts')).validate(options)));
+
+  program
     .command('demo')
     .description('Cut the job that comes with the program, into out/demo.')
     .addOption(workersOption())

@@ -1,6 +1,6 @@
 import { formatNumber } from '#src/formats/numbers.ts';
 import type { Result } from '#src/formats/result.ts';
-import { FIGURE_NAMES, type FigureName } from '#src/planning/figures.ts';
+import { FIGURE_NAMES, type Figure, type FigureName } from '#src/planning/figures.ts';
 import type { Bound, LimitVerdict } from '#src/planning/verdict.ts';
 import { FIGURE_WORDS } from '#src/run/words.ts';
 
@@ -19,14 +19,22 @@ export function plain(value: number, digits: number): string {
   return formatNumber(value, digits);
 }
 
-function valueText(name: FigureName, result: Result): string {
-  const { value } = result.figures[name];
+function shown(name: FigureName, value: Figure['value']): string {
   const { digits } = FIGURE_WORDS[name];
   if (value === null) return '-';
   if (typeof value === 'number') return plain(value, digits);
   const parts = value.map((one) => plain(one, digits));
   if (name !== 'rateMmPerMin') return parts.join(' x ');
   return parts[0] === parts[1] ? (parts[0] as string) : parts.join(', ');
+}
+
+/** A band as "low to high", an open end as "or more"; empty where there is none. */
+function bandText(name: FigureName, { low, high }: Figure): string {
+  if (low === null && high === null) return '';
+  if (high === null) return `${shown(name, low)} or more`;
+  if (low === null) return `${shown(name, high)} or less`;
+  const [from, to] = [shown(name, low), shown(name, high)];
+  return from === to ? '' : `${from} to ${to}`;
 }
 
 function boundText(bound: Bound, digits: number): string | null {
@@ -42,16 +50,23 @@ function limitText({ limit }: LimitVerdict, digits: number): string {
   return upper === null ? `at least ${lower}` : `at most ${upper}`;
 }
 
-/** The figures of a result as a table: name, value, unit, limit of the drawing and how it fares. */
+/** The figures of a result as a table: name, value, unit, band, limit of the drawing and how it fares. */
 export function figureTable(result: Result): string {
   const judged = new Map(result.verdict.limits.map((limit) => [limit.id, limit]));
-  const shown = FIGURE_NAMES.filter((name) => result.figures[name].value !== null || judged.has(name));
-  const rows = shown.map((name) => {
+  const told = FIGURE_NAMES.filter((name) => result.figures[name].value !== null || judged.has(name));
+  const rows = told.map((name) => {
     const { label, unit, digits } = FIGURE_WORDS[name];
+    const figure = result.figures[name];
     const verdict = judged.get(name);
-    const known = result.figures[name].value !== null;
-    const state = known ? (verdict?.state ?? '') : 'not known';
-    return [label, valueText(name, result), unit, verdict ? limitText(verdict, digits + 1) : '', verdict ? state : ''];
+    const state = figure.value === null ? 'not known' : (verdict?.state ?? '');
+    const limit = verdict ? [limitText(verdict, digits + 1), state] : ['', ''];
+    return [label, shown(name, figure.value), unit, bandText(name, figure), ...limit];
   });
-  return columns([['', '', '', 'limit', ''], ...rows], [1]);
+  return columns([['', '', '', 'band', 'limit', ''], ...rows], [1]);
+}
+
+/** What the bands of a result cover, and what they do not, in a paragraph. */
+export function bandNote({ figures, modelError }: Result): string {
+  const { covers, low, high } = figures.timeMin;
+  return `${low === null && high === null ? '' : `Band: ${covers}. `}${modelError}`;
 }

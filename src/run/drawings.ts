@@ -1,34 +1,33 @@
-import { nominalSizes, pointAt } from '#src/base/outline.ts';
-import {
-  DEGREES_PER_RADIAN,
-  METRES_PER_MICROMETRE,
-  METRES_PER_MILLIMETRE,
-  METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE,
-} from '#src/base/units.ts';
-import type { Limits, ResolvedJob } from '#src/formats/job/resolve.ts';
-import { formatNumber } from '#src/formats/numbers.ts';
+import { makeOutline, nominalSizes, pointAt } from '#src/base/outline.ts';
+import type { ResolvedJob, ResolvedPass } from '#src/formats/job/resolve.ts';
 import { encodePng } from '#src/formats/png.ts';
 import { laidOver, type Rasteriser } from '#src/formats/raster.ts';
-import { stockLibrary } from '#src/formats/stock-library.ts';
-import { type CutCurve, cutCurves, mainCurve, splitCurve } from '#src/picture/cavity/contour.ts';
+import { type CutCurve, curveLine, curveLines, cutCurves, mainCurve, splitCurve } from '#src/picture/cavity/contour.ts';
 import { crackStrokes } from '#src/picture/cavity/cracks.ts';
 import { makeGrid } from '#src/picture/cavity/grid.ts';
 import { cavityOverlay, overlayMargins } from '#src/picture/cavity/overlay.ts';
+import { BACKING_DRAWN } from '#src/picture/cavity/overlay-foot.ts';
 import { renderSteps } from '#src/picture/cavity/render.ts';
-import { cavityBounds, fitView, naturalHeight, type SectionView } from '#src/picture/cavity/view.ts';
-import { drawSection, type SectionLimits } from '#src/picture/section.ts';
-import type { ToolOutline } from '#src/picture/tool.ts';
+import { type CavityBounds, cavityBounds, fitView, naturalHeight, type SectionView } from '#src/picture/cavity/view.ts';
+import { sectionPlane } from '#src/picture/plane.ts';
+import { type Scene, type SceneSizes, sceneOf, sizesIn } from '#src/picture/scene.ts';
+import { drawSection } from '#src/picture/section.ts';
+import type { ExitFigures } from '#src/picture/through.ts';
+import { type ToolOutline, toolParts } from '#src/picture/tool.ts';
 import { drawTrace } from '#src/picture/trace.ts';
 import type { CutMeasures } from '#src/planning/measure.ts';
 import type { BrickField } from '#src/voxel/bricks.ts';
 import type { Cut } from '#src/voxel/cut.ts';
 import { SCALAR } from '#src/voxel/state.ts';
+import { captionOf, gritText, limitTexts } from './captions.ts';
 import type { FloorTexture } from './trace.ts';
 import { version } from './version.ts';
 
 /** Everything the pictures of a cut are drawn from. */
 export interface Drawable {
   readonly job: ResolvedJob;
+  /** The pass that has just been cut; the last one where left out. */
+  readonly pass?: ResolvedPass;
   readonly cut: Cut;
   readonly bricks: BrickField;
   readonly measures: CutMeasures;
@@ -40,106 +39,158 @@ const PICTURE_WIDTH = 1600;
 const PICTURE_HEIGHT = 1800;
 const PICTURE_UNIT = 1.6;
 
+/** Voxels within which stretches of the section count as one. */
+const JOINED = 4;
+
 const text = (bytes: string) => new TextEncoder().encode(bytes);
-
-const nameIn = (records: readonly { readonly id: string; readonly name: string }[], id: string | undefined) =>
-  records.find((record) => record.id === id)?.name;
-
-/** Abrasive and grade in words. */
-export function gritText({ file, conditions }: ResolvedJob): string {
-  const { grit } = file.slurry;
-  const abrasive = nameIn(stockLibrary.abrasives, file.slurry.abrasive) ?? file.slurry.abrasive;
-  const size = grit ?? `d50 ${formatNumber(conditions.grit.massMedian / METRES_PER_MICROMETRE, 3)} \u00b5m`;
-  return `${abrasive} ${size}`;
-}
-
-/** What was set, in two lines. */
-function captionOf({ job, cut }: Drawable): string[] {
-  const { conditions, file } = job;
-  const { magnification, floor } = cut.model;
-  const amplitude = formatNumber(conditions.amplitude / METRES_PER_MICROMETRE, 3);
-  const work = nameIn(stockLibrary.materials, file.workpiece.material) ?? 'a material of the job\u2019s own';
-  const voxel = formatNumber(floor.dx / METRES_PER_MICROMETRE, 3);
-  const magnified = magnification > 1 ? `, lateral magnification ${formatNumber(magnification, 3)}` : '';
-  return [
-    `${work}, ${gritText(job)}, ${formatNumber(100 * conditions.concentration, 3)} vol%, ${amplitude} \u00b5m zero to peak at ` +
-      `${formatNumber(conditions.frequency / 1e3, 4)} kHz, ${driveText(job)}`,
-    `Voxel ${voxel} \u00b5m${magnified}, seed ${job.cut.seed}, Spallwright ${version}. An estimate, to be confirmed by a trial cut.`,
-  ];
-}
-
-/** How the tool was driven, as a caption says it. */
-function driveText({ feed, staticLoad }: ResolvedJob): string {
-  if (feed === undefined) return `${formatNumber(staticLoad, 3)} N`;
-  return `fed at ${formatNumber(feed / METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE, 3)} mm/min`;
-}
 
 const titleOf = (job: ResolvedJob) => (job.title === '' ? 'Cavity' : job.title);
 
-/** The tool where it stands at the end; an annular one has no one profile to draw. */
-function toolOf({ job, cut, measures }: Drawable): ToolOutline | undefined {
-  if (job.tool.kind === 'ring') return undefined;
-  const { bounds } = cut.model.outline;
+const passOf = ({ job, pass }: Drawable): ResolvedPass => pass ?? (job.passes.at(-1) as ResolvedPass);
+
+/** The job's passes up to the one that is shown. */
+function passesSoFar(drawable: Drawable): readonly ResolvedPass[] {
+  const { passes } = drawable.job;
+  return passes.slice(0, passes.indexOf(passOf(drawable)) + 1);
+}
+
+/** The section's plane, and what it cuts. */
+function sceneFor(job: ResolvedJob, pass: ResolvedPass): Scene {
+  return sceneOf({
+    cavity: job.cavity,
+    tool: pass.tool,
+    face: pass.face,
+    bores: pass.bores,
+    depth: job.depth,
+    ...(job.through && { through: job.stock.thickness }),
+  });
+}
+
+/** The tool where it stands at the end, worn as it is. */
+function toolOf(drawable: Drawable, scene: Scene): ToolOutline {
+  const { cut, measures } = drawable;
+  const { from, to } = scene.toolChord;
   return {
-    width: bounds.xMax - bounds.xMin,
-    centre: (bounds.xMin + bounds.xMax) / 2,
+    width: to - from,
+    centre: (from + to) / 2,
     faceDepth: -(cut.state.scalars[SCALAR.face] as number),
     edgeRadius: measures.toolEdgeRadius,
     worn: measures.toolWearLength,
-    newEdgeRadius: job.edgeRadius,
+    newEdgeRadius: passOf(drawable).edgeRadius,
+    sideLoss: measures.toolSideLoss,
+    parts: scene.toolParts,
   };
 }
 
-/** The drawing's limits as the section writes them. */
-function limitTexts(limits: Limits, nominal: number): SectionLimits {
-  const mm = (metres: number) => (metres / METRES_PER_MILLIMETRE).toFixed(3);
-  const entry = [
-    ...(limits.entrySizeLower === undefined ? [] : [mm(nominal + limits.entrySizeLower)]),
-    ...(limits.entrySizeUpper === undefined ? [] : [mm(nominal + limits.entrySizeUpper)]),
-  ].join(' to ');
-  return {
-    ...(entry !== '' && { entry: `${entry} mm` }),
-    ...(limits.taper !== undefined && { taper: `\u2264 ${(limits.taper * DEGREES_PER_RADIAN).toFixed(2)}\u00b0` }),
-    ...(limits.cornerRadius !== undefined && { corner: `\u2264 ${mm(limits.cornerRadius)} mm` }),
-    ...(limits.edgeChip !== undefined && {
-      chip: `\u2264 ${formatNumber(limits.edgeChip / METRES_PER_MICROMETRE, 3)} \u00b5m`,
-    }),
-  };
+/** Tools of the passes before the one shown, new, where their cut ended. */
+function earlierTools(drawable: Drawable, scene: Scene): ToolOutline[] {
+  return passesSoFar(drawable)
+    .slice(0, -1)
+    .map((pass): ToolOutline => {
+      const parts = toolParts(makeOutline(pass.tool), pass.face, scene.plane, pass.bores);
+      const edge = { edgeRadius: pass.edgeRadius, newEdgeRadius: pass.edgeRadius, worn: 0 };
+      return { width: 0, centre: 0, faceDepth: pass.depth, ...edge, parts };
+    });
 }
 
 /** Whether the cavity has the sizes that drawings are dimensioned with: one all in chips has none. */
-export function isMeasured({ measures }: Drawable): boolean {
-  return [measures.entrySize[0], measures.floorSize[0]].every(Number.isFinite);
+export function isMeasured(drawable: Drawable): boolean {
+  const { measures, job } = drawable;
+  const plain = passOf(drawable).face.kind === 'flat' && !job.through && job.cavity.kind !== 'path';
+  const sizes = plain ? [measures.entrySize[0], measures.floorSize[0]] : [measures.depth];
+  return sizes.every(Number.isFinite);
+}
+
+/** What both pictures say of a cut: plane, sizes, far side and tool. */
+interface Marks {
+  readonly scene: Scene;
+  readonly sizes: SceneSizes;
+  readonly depth: number;
+  readonly tool: ToolOutline;
+  readonly exit?: ExitFigures;
+}
+
+/** The largest chip of the exit; it breaks out all round, and is named where there is most room. */
+function exitChipOf({ measures }: Drawable): ExitFigures['chip'] {
+  const { exitChip } = measures;
+  return exitChip && exitChip.width > 0 ? { ...exitChip, side: 'right' } : undefined;
+}
+
+/** Whether the cut has come out at the far face in the plane of the section. */
+function comesOut({ job }: Drawable, curve: CutCurve): boolean {
+  return job.through && curve.z.some((z) => z >= job.stock.thickness);
+}
+
+function marksOf(drawable: Drawable, curve: CutCurve | undefined): Marks | undefined {
+  if (!curve || !isMeasured(drawable)) return undefined;
+  const { job, measures, bricks } = drawable;
+  const scene = sceneFor(job, passOf(drawable));
+  const out = comesOut(drawable, curve);
+  const chip = out ? exitChipOf(drawable) : undefined;
+  const { thickness } = job.stock;
+  const whole = {
+    depth: out ? thickness : measures.depth,
+    entrySize: measures.entrySize[0] as number,
+    floorSize: measures.floorSize[0] as number,
+    chipDepth: measures.chipDepth.largest,
+    ...(chip && { exitChipDepth: chip.depth }),
+    ...(out && { through: thickness }),
+  };
+  const sizes = sizesIn(scene, curveLines(curve), whole, JOINED * bricks.pitch);
+  if (sizes === undefined) return undefined;
+  const backing = passOf(drawable).exit?.backing ?? false;
+  const into = Math.max(0, -(drawable.cut.state.scalars[SCALAR.floorMean] as number) - thickness);
+  return {
+    scene,
+    sizes,
+    depth: whole.depth,
+    tool: toolOf(drawable, scene),
+    ...(out && { exit: { size: sizes.floorSize, backing, ...(chip && { chip }), ...(backing && { into }) } }),
+  };
+}
+
+/** What the section and the cavity's picture have in common. */
+function commonMarks({ scene, sizes, depth, tool, exit }: Marks) {
+  return {
+    ...sizes,
+    round: scene.round,
+    depth,
+    tool,
+    ...(scene.shaped && { shaped: true }),
+    ...(scene.step !== undefined && { shoulder: { depth: depth - scene.step } }),
+    ...(exit && { exit }),
+  };
 }
 
 /** The annotated half-section as SVG; null where the cut is too shallow to have walls that can be measured. */
 export function sectionSvg(drawable: Drawable, curve: CutCurve | undefined): Uint8Array<ArrayBuffer> | null {
   const { job, cut, measures } = drawable;
-  const split = curve && isMeasured(drawable) && splitCurve(curve, measures.depth);
-  if (!split) return null;
-  const centre = cut.model.x0 + ((cut.model.floor.nx - 1) / 2) * cut.model.floor.dx;
+  const marks = marksOf(drawable, curve);
+  const split = curve && marks && splitCurve(curve, marks.depth);
+  if (!marks || !split) return null;
+  const { scene, sizes } = marks;
   const chipAt = pointAt(cut.model.outline, measures.chipWidth.at);
-  const tool = toolOf(drawable);
   const { largest } = measures.chipWidth;
-  const nominal = nominalSizes(job.cavity)[0] as number;
+  const middle = (sizes.extent.from + sizes.extent.to) / 2;
+  const earlier = earlierTools(drawable, scene);
+  const overall = scene.bySection && scene.walled;
   const drawn = drawSection({
     title: titleOf(job),
-    caption: captionOf(drawable),
-    round: job.cavity.kind === 'circle' || job.cavity.kind === 'ring',
-    centre,
+    caption: captionOf(job, passesSoFar(drawable), drawable.cut),
+    ...commonMarks(marks),
     ...split,
-    depth: measures.depth,
-    entrySize: measures.entrySize[0] as number,
-    floorSize: measures.floorSize[0] as number,
-    taper: measures.taper,
+    ...(curve.loose && { loose: curve.loose.map(curveLine) }),
+    ...(scene.walled && { sizes: { entry: measures.entrySize, floor: measures.floorSize, overall } }),
+    taper: scene.walled ? measures.taper : Number.NaN,
     cornerRadius: measures.cornerRadius,
     ...(largest > 0 && {
-      chip: { width: largest, depth: measures.chipDepth.largest, side: chipAt.x < centre ? 'left' : 'right' },
+      chip: { width: largest, depth: measures.chipDepth.largest, side: chipAt.x < middle ? 'left' : 'right' },
     }),
-    ...(tool && { tool }),
-    nominal: { entrySize: nominal, depth: job.depth },
+    ...(earlier.length > 0 && { earlier }),
+    nominal: { entrySize: scene.nominalSize, depth: job.depth, lines: scene.nominalLines },
     thickness: job.stock.thickness,
-    limits: limitTexts(job.limits, nominal),
+    ...(scene.plane !== 0 && { plane: scene.plane }),
+    limits: limitTexts(job.limits, nominalSizes(job.cavity)),
   });
   return text(drawn.svg);
 }
@@ -167,27 +218,27 @@ export function traceSvg({ job }: Drawable, floor: FloorTexture): Uint8Array<Arr
 }
 
 /** The dimensioned picture over a view of the cavity, as SVG. */
-function overlaySvg(drawable: Drawable, view: SectionView, behind: number, curve: CutCurve | undefined): string {
+function overlaySvg(
+  drawable: Drawable,
+  seen: { readonly view: SectionView; readonly behind: number; readonly curve: CutCurve },
+  marks: Marks,
+): string {
   const { job, cut, bricks, measures } = drawable;
+  const { view, behind, curve } = seen;
   const chip = pointAt(cut.model.outline, measures.chipWidth.at);
-  const seen = measures.chipWidth.largest > 0 && chip.y >= view.yCut;
-  const tool = toolOf(drawable);
+  const shown = measures.chipWidth.largest > 0 && chip.y >= view.yCut;
   return cavityOverlay(
     view,
     {
-      round: job.cavity.kind === 'circle' || job.cavity.kind === 'ring',
-      centre: cut.model.x0 + ((cut.model.floor.nx - 1) / 2) * cut.model.floor.dx,
+      ...commonMarks(marks),
       behind,
-      entrySize: measures.entrySize[0] as number,
-      floorSize: measures.floorSize[0] as number,
-      depth: measures.depth,
       wantedDepth: job.depth,
-      ...(seen && { chip: { width: measures.chipWidth.largest, x: chip.x, y: chip.y } }),
-      ...(tool && { tool }),
-      ...(curve && { outline: curve, cracks: crackStrokes(bricks, curve, view.yCut) }),
+      ...(shown && { chip: { width: measures.chipWidth.largest, x: chip.x, y: chip.y } }),
+      outline: curve,
+      cracks: crackStrokes(bricks, curve, view.yCut),
       caption: {
         title: titleOf(job),
-        grit: gritText(job),
+        grit: gritText(job, passOf(drawable)),
         time: measures.time,
         seed: job.cut.seed,
         version,
@@ -195,6 +246,14 @@ function overlaySvg(drawable: Drawable, view: SectionView, behind: number, curve
     },
     { unit: PICTURE_UNIT },
   ).svg;
+}
+
+/** The removed work, no deeper than the work is thick. */
+function shownBounds({ job, bricks }: Drawable): CavityBounds | undefined {
+  if (!job.through) return cavityBounds(bricks);
+  const { thickness } = job.stock;
+  const bounds = cavityBounds(bricks, thickness);
+  return bounds && { ...bounds, depth: Math.min(bounds.depth, thickness) };
 }
 
 /**
@@ -207,24 +266,44 @@ export function* cavityPng(
   rasteriser: Rasteriser,
 ): Generator<number, Uint8Array<ArrayBuffer> | null> {
   const { job, bricks } = drawable;
-  const bounds = cavityBounds(bricks);
+  const bounds = shownBounds(drawable);
   if (!bounds) return null;
-  const margins = overlayMargins(PICTURE_UNIT);
-  const natural = naturalHeight(PICTURE_WIDTH, bounds, margins);
-  const view = fitView({ width: PICTURE_WIDTH, height: Math.min(natural, PICTURE_HEIGHT) }, bounds, margins, 0);
-  const under = yield* renderSteps(bricks, view, { unit: PICTURE_UNIT, thickness: job.stock.thickness });
-  const marked = isMeasured(drawable)
-    ? laidOver(under, rasteriser.rasterise(overlaySvg(drawable, view, bounds.yMax, curve), PICTURE_WIDTH))
-    : under;
+  const { plane } = sceneFor(job, passOf(drawable));
+  const marks = marksOf(drawable, curve);
+  const backing = marks?.exit?.backing ?? false;
+  const margins = overlayMargins(PICTURE_UNIT, { backing, gang: marks?.sizes.centres !== undefined });
+  const natural = naturalHeight(PICTURE_WIDTH, bounds, margins, plane);
+  const view = fitView({ width: PICTURE_WIDTH, height: Math.min(natural, PICTURE_HEIGHT) }, bounds, margins, plane);
+  const through = curve && comesOut(drawable, curve);
+  const slab = backing ? BACKING_DRAWN * PICTURE_UNIT * view.pixel : 0;
+  const under = yield* renderSteps(bricks, view, {
+    unit: PICTURE_UNIT,
+    thickness: job.stock.thickness,
+    ...(through && { through: { backing: slab } }),
+  });
+  const behind = bounds.yMax - plane;
+  const marked =
+    marks && curve
+      ? laidOver(under, rasteriser.rasterise(overlaySvg(drawable, { view, behind, curve }, marks), PICTURE_WIDTH))
+      : under;
   yield 1;
   const bytes = encodePng(marked, {
     pixel: view.pixel,
-    text: { Title: titleOf(job), Software: `Spallwright ${version}`, Comment: captionOf(drawable).join(' ') },
+    text: {
+      Title: titleOf(job),
+      Software: `Spallwright ${version}`,
+      Comment: captionOf(job, passesSoFar(drawable), drawable.cut).join(' '),
+    },
   });
   return Uint8Array.from(bytes);
 }
 
-/** The cut line in the plane of the pictures. */
-export function sectionCurve(bricks: BrickField): CutCurve | undefined {
-  return mainCurve(cutCurves(bricks, 0, makeGrid(bricks)));
+/**
+ * The cut line in the plane of the pictures: that of the job's outline, y = 0 where no job is given. Of a work that is cut
+ * through the line runs along the far face.
+ */
+export function sectionCurve(bricks: BrickField, job?: ResolvedJob): CutCurve | undefined {
+  const plane = job === undefined ? 0 : sectionPlane(makeOutline(job.cavity));
+  const thickness = bricks.thickness ?? (job?.through ? job.stock.thickness : undefined);
+  return mainCurve(cutCurves(bricks, plane, makeGrid(bricks), thickness));
 }

@@ -7,9 +7,16 @@ import {
   MILLIMETRES_PER_METRE,
   SECONDS_PER_MINUTE,
 } from '#src/base/units.ts';
-import type { ResolvedJob } from '#src/formats/job/resolve.ts';
+import type { ResolvedPass } from '#src/formats/job/resolve.ts';
 import type { Estimate } from '#src/physics/estimate.ts';
-import { type Figure, type Figures, NO_BAND, plainFigure } from '#src/planning/figures.ts';
+import {
+  FIGURE_NAMES,
+  type FigureName,
+  type Figures,
+  type FigureValues,
+  NO_BAND,
+  plainFigure,
+} from '#src/planning/figures.ts';
 import type { CutMeasures } from '#src/planning/measure.ts';
 import type { FloorTexture } from './trace.ts';
 
@@ -19,88 +26,175 @@ const mmPerMin = (speed: number) => speed / METRES_PER_SECOND_PER_MILLIMETRE_PER
 const mm3PerMin = (cubicMetresPerSecond: number) =>
   (cubicMetresPerSecond / CUBIC_METRES_PER_CUBIC_MILLIMETRE) * SECONDS_PER_MINUTE;
 
-/** A figure without a band; one that could not be had says why. */
-function figure(value: number | readonly number[], otherwise: string, covers = NO_BAND): Figure {
-  const whole = typeof value === 'number' ? Number.isFinite(value) : value.every(Number.isFinite) && value.length > 0;
-  return whole ? plainFigure(value, covers) : plainFigure(null, otherwise);
+/** Words about figures: what a value rests on, and why there is none. */
+export interface FigureWords {
+  /** What is said beside a value, after what its band covers. */
+  readonly notes?: Readonly<Partial<Record<FigureName, string>>>;
+  /** Why a figure has no value. */
+  readonly missing?: Readonly<Partial<Record<FigureName, string>>>;
 }
 
-const NO_STALL = 'not known: this version renews the slurry everywhere, and the load has no stall';
-const NO_EDGE_WEAR = `${NO_BAND}; the edge is taken as new, this version does not wear it`;
 const NOTHING_REMOVED = 'not known: this setting removes nothing';
-const NOT_ESTIMATED = 'not in the estimate: cut the job';
+const NO_FLOOR = 'none: the cut goes through, and there is no floor';
+const NO_EXIT = 'none: the cavity is blind';
 
-/** The figures of a cut as measured. */
-export function cutFigures(measures: CutMeasures, texture: FloorTexture | null): Figures {
+const isWhole = (value: FigureValues[FigureName]) =>
+  typeof value === 'number'
+    ? Number.isFinite(value)
+    : value !== null && value.length > 0 && value.every(Number.isFinite);
+
+/** Figures of values, without bands; those without a value say why. */
+export function figuresOf(values: FigureValues, { notes = {}, missing = {} }: FigureWords = {}): Figures {
+  const entries = FIGURE_NAMES.map((name) => {
+    const value = values[name];
+    if (!isWhole(value)) return [name, plainFigure(null, missing[name] ?? NOTHING_REMOVED)];
+    const note = notes[name];
+    return [name, plainFigure(value, note === undefined ? NO_BAND : `${NO_BAND}; ${note}`)];
+  });
+  return Object.fromEntries(entries) as Figures;
+}
+
+/** Figures a through-cut has none of. */
+const FLOOR_FIGURES = [
+  'floorSizeMm',
+  'floorFlatnessUm',
+  'floorHumpUm',
+  'floorRaUm',
+  'floorRzUm',
+  'cornerRadiusUm',
+] as const;
+
+function throughWords(through: boolean): Partial<Record<FigureName, string>> {
+  if (!through) return { exitChipMaxUm: NO_EXIT };
+  return Object.fromEntries(FLOOR_FIGURES.map((name) => [name, NO_FLOOR]));
+}
+
+const NOT_BALANCED = 'not known: the slurry\u2019s exchange does not break down at any load looked at';
+
+/** The values of one pass as measured on its voxels. */
+export function cutValues(pass: ResolvedPass, measures: CutMeasures, texture: FloorTexture | null): FigureValues {
   const m = measures;
+  return {
+    timeMin: m.time / SECONDS_PER_MINUTE,
+    depthMm: mm(m.depth),
+    rateMmPerMin: [mmPerMin(m.rateStart), mmPerMin(m.rateEnd)],
+    mrrMm3PerMin: mm3PerMin(m.removalRate),
+    entrySizeMm: m.entrySize.map(mm),
+    floorSizeMm: m.floorSize.map(mm),
+    overcutEntryUm: um(m.overcutEntry),
+    overcutFloorUm: um(m.overcutFloor),
+    taperDeg: m.taper * DEGREES_PER_RADIAN,
+    cornerRadiusUm: um(m.cornerRadius),
+    floorFlatnessUm: um(m.floorFlatness),
+    floorHumpUm: um(m.floorHump),
+    floorRaUm: pass.exit ? null : um(texture?.ra ?? Number.NaN),
+    floorRzUm: pass.exit ? null : um(texture?.rz ?? Number.NaN),
+    edgeChipMaxUm: um(m.chipWidth.largest),
+    edgeChipP95Um: um(m.chipWidth.p95),
+    edgeChipDepthUm: um(m.chipDepth.largest),
+    exitChipMaxUm: m.exitChip ? um(m.exitChip.width) : null,
+    damageDepthUm: um(m.damageDepth),
+    damageDepthLargestUm: um(m.damageLargest),
+    stockNeededUm: um(m.damageLargest),
+    toolWearLengthMm: mm(m.toolWearLength),
+    toolWearRatio: m.toolWearRatio,
+    toolEdgeRadiusUm: um(m.toolEdgeRadius),
+    toolSideLossUm: um(m.toolSideLoss),
+    stallMargin: m.stallMargin,
+    rateBestLoadN: m.bestPressure === null ? null : m.bestPressure * pass.toolArea,
+    impacts: m.impacts,
+  };
+}
+
+/** What is said of a cut's figures. */
+export function cutWords(pass: ResolvedPass, measures: CutMeasures, texture: FloorTexture | null): FigureWords {
+  const noWall = 'not known: too little wall was found at this depth';
   const noChip = 'not known: no chip was found on the rim';
   const noTrace = 'not known: there is no trace';
-  const stated = texture ? [NO_BAND, ...texture.departures].join('; ') : noTrace;
-  const margin = `${NO_BAND}; ${Math.round(um(m.flatnessMargin))} um inside the tool's outline are left out`;
+  const departures = texture && texture.departures.length > 0 ? texture.departures.join('; ') : undefined;
   return {
-    timeMin: figure(m.time / SECONDS_PER_MINUTE, NOTHING_REMOVED),
-    depthMm: figure(mm(m.depth), NOTHING_REMOVED),
-    rateMmPerMin: figure([mmPerMin(m.rateStart), mmPerMin(m.rateEnd)], NOTHING_REMOVED),
-    mrrMm3PerMin: figure(mm3PerMin(m.removalRate), NOTHING_REMOVED),
-    entrySizeMm: figure(m.entrySize.map(mm), 'not known: too little wall was found at this depth'),
-    floorSizeMm: figure(m.floorSize.map(mm), 'not known: too little wall was found at this depth'),
-    overcutEntryUm: figure(um(m.overcutEntry), 'not known: no entry size'),
-    overcutFloorUm: figure(um(m.overcutFloor), 'not known: no floor size'),
-    taperDeg: figure(
-      m.taper * DEGREES_PER_RADIAN,
-      'not known: the cavity is too shallow, its fillet leaves too little wall',
-    ),
-    cornerRadiusUm: figure(um(m.cornerRadius), 'not known: the corner is too shallow or the voxel too coarse'),
-    floorFlatnessUm: figure(um(m.floorFlatness), 'not known: the floor is smaller than the margin left out', margin),
-    floorRaUm: figure(um(texture?.ra ?? Number.NaN), noTrace, stated),
-    floorRzUm: figure(um(texture?.rz ?? Number.NaN), noTrace, stated),
-    edgeChipMaxUm: figure(um(m.chipWidth.largest), noChip),
-    edgeChipP95Um: figure(um(m.chipWidth.p95), noChip),
-    edgeChipDepthUm: figure(um(m.chipDepth.largest), noChip),
-    damageDepthUm: figure(um(m.damageDepth), NOTHING_REMOVED),
-    damageDepthLargestUm: figure(um(m.damageLargest), NOTHING_REMOVED),
-    toolWearLengthMm: figure(mm(m.toolWearLength), NOTHING_REMOVED),
-    toolWearRatio: figure(m.toolWearRatio, NOTHING_REMOVED),
-    toolEdgeRadiusUm: figure(um(m.toolEdgeRadius), NOTHING_REMOVED, NO_EDGE_WEAR),
-    stallMargin: plainFigure(null, NO_STALL),
-    impacts: figure(m.impacts, NOTHING_REMOVED),
+    notes: {
+      floorFlatnessUm: `${Math.round(um(measures.flatnessMargin))} um inside the tool's outline are left out`,
+      ...(departures !== undefined && { floorRaUm: departures, floorRzUm: departures }),
+    },
+    missing: {
+      entrySizeMm: noWall,
+      floorSizeMm: noWall,
+      overcutEntryUm: 'not known: no entry size',
+      overcutFloorUm: 'not known: no floor size',
+      taperDeg: 'not known: the cavity is too shallow, its fillet leaves too little wall',
+      cornerRadiusUm: 'not known: the corner is too shallow or the voxel too coarse',
+      floorFlatnessUm: 'not known: the floor is smaller than the margin left out',
+      floorHumpUm: 'not known: the floor is smaller than the margin left out',
+      floorRaUm: noTrace,
+      floorRzUm: noTrace,
+      edgeChipMaxUm: noChip,
+      edgeChipP95Um: noChip,
+      edgeChipDepthUm: noChip,
+      stallMargin: NOT_BALANCED,
+      rateBestLoadN: NOT_BALANCED,
+      ...throughWords(pass.exit !== undefined),
+    },
   };
 }
 
 /** Sizes of the cavity that a tool with this overcut per side opens (m); a ring's core gets smaller. */
-function openedSizes(tool: OutlineSpec, overcut: number): number[] {
+export function openedSizes(tool: OutlineSpec, overcut: number): number[] {
   return nominalSizes(tool).map((size, index) => size + (tool.kind === 'ring' && index === 1 ? -2 : 2) * overcut);
 }
 
-/** The figures of an estimate; those it has no law for are null and say so. */
-export function estimateFigures(job: ResolvedJob, estimated: Estimate): Figures {
-  const e = estimated;
-  const cavity = makeOutline(job.cavity);
-  const rate = mmPerMin(e.rate);
-  const frequency = job.conditions.frequency;
+/** The values of one pass as estimated; null where the estimate has no law. */
+export function estimateValues(pass: ResolvedPass, cavity: OutlineSpec, e: Estimate): FigureValues {
+  const area = makeOutline(cavity).area;
+  const through = pass.exit !== undefined;
   return {
-    timeMin: figure(e.time / SECONDS_PER_MINUTE, NOTHING_REMOVED),
-    depthMm: figure(mm(job.depth), NOTHING_REMOVED),
-    rateMmPerMin: figure([rate, rate], NOTHING_REMOVED),
-    mrrMm3PerMin: figure(mm3PerMin(cavity.area * e.rate), NOTHING_REMOVED),
-    entrySizeMm: figure(openedSizes(job.tool, e.overcutEntry).map(mm), NOTHING_REMOVED),
-    floorSizeMm: figure(openedSizes(job.tool, e.overcutFloor).map(mm), NOTHING_REMOVED),
-    overcutEntryUm: figure(um(e.overcutEntry), NOTHING_REMOVED),
-    overcutFloorUm: figure(um(e.overcutFloor), NOTHING_REMOVED),
-    taperDeg: figure(e.taper * DEGREES_PER_RADIAN, NOTHING_REMOVED),
-    cornerRadiusUm: plainFigure(null, NOT_ESTIMATED),
-    floorFlatnessUm: plainFigure(null, NOT_ESTIMATED),
-    floorRaUm: figure(um(e.floorRa), NOTHING_REMOVED),
-    floorRzUm: plainFigure(null, NOT_ESTIMATED),
-    edgeChipMaxUm: figure(um(e.edgeChipLargest.width), NOTHING_REMOVED),
-    edgeChipP95Um: figure(um(e.edgeChipP95.width), NOTHING_REMOVED),
-    edgeChipDepthUm: figure(um(e.edgeChipLargest.depth), NOTHING_REMOVED),
-    damageDepthUm: figure(um(e.damageDepth), NOTHING_REMOVED),
-    damageDepthLargestUm: figure(um(e.largestDamage), NOTHING_REMOVED, `${NO_BAND}; 99.9 % of hits stay below`),
-    toolWearLengthMm: figure(mm(e.toolWearLength), NOTHING_REMOVED),
-    toolWearRatio: figure(e.toolWearRatio, NOTHING_REMOVED),
-    toolEdgeRadiusUm: figure(um(job.edgeRadius), NOTHING_REMOVED, NO_EDGE_WEAR),
-    stallMargin: plainFigure(null, NO_STALL),
-    impacts: figure(e.engaged * job.toolArea * frequency * e.time, NOTHING_REMOVED),
+    timeMin: e.time / SECONDS_PER_MINUTE,
+    depthMm: mm(e.depthReached),
+    rateMmPerMin: [mmPerMin(e.rateStart), mmPerMin(e.rateEnd)],
+    mrrMm3PerMin: mm3PerMin(area * e.rate),
+    entrySizeMm: openedSizes(pass.tool, e.overcutEntry).map(mm),
+    floorSizeMm: through ? null : openedSizes(pass.tool, e.overcutFloor).map(mm),
+    overcutEntryUm: um(e.overcutEntry),
+    overcutFloorUm: um(e.overcutFloor),
+    taperDeg: e.taper * DEGREES_PER_RADIAN,
+    cornerRadiusUm: through ? null : um(e.cornerRadius),
+    floorFlatnessUm: null,
+    floorHumpUm: through ? null : um(e.hump),
+    floorRaUm: through ? null : um(e.floorRa),
+    floorRzUm: null,
+    edgeChipMaxUm: um(e.edgeChipLargest.width),
+    edgeChipP95Um: um(e.edgeChipP95.width),
+    edgeChipDepthUm: um(e.edgeChipLargest.depth),
+    exitChipMaxUm: e.exit ? um(e.exit.chipWidth) : null,
+    damageDepthUm: um(e.damageDepth),
+    damageDepthLargestUm: um(e.largestDamage),
+    stockNeededUm: um(e.largestDamage),
+    toolWearLengthMm: mm(e.toolWearLength),
+    toolWearRatio: e.toolWearRatio,
+    toolEdgeRadiusUm: um(e.toolEdgeRadius),
+    toolSideLossUm: um(e.toolSideLoss),
+    stallMargin: e.stallMargin,
+    rateBestLoadN: e.bestPressure === null ? null : e.bestPressure * pass.toolArea,
+    impacts: e.engaged * pass.toolArea * pass.conditions.frequency * e.time,
+  };
+}
+
+const NOT_ESTIMATED = 'not in the estimate: cut the job';
+
+/** What is said of an estimate's figures. */
+export function estimateWords(pass: ResolvedPass): FigureWords {
+  return {
+    notes: {
+      damageDepthLargestUm: '99.9 % of hits stay below',
+      stockNeededUm: 'the damage that 99.9 % of hits stay below',
+    },
+    missing: {
+      floorFlatnessUm: NOT_ESTIMATED,
+      floorRzUm: NOT_ESTIMATED,
+      taperDeg: 'not known: the cavity is too shallow to have a wall',
+      stallMargin: NOT_BALANCED,
+      rateBestLoadN: NOT_BALANCED,
+      ...throughWords(pass.exit !== undefined),
+    },
   };
 }

@@ -1,5 +1,7 @@
 import { initRaster, type RasterFonts, type Rasteriser } from '#src/formats/raster.ts';
-import { checkJob, cutJob, estimateJob } from './pipeline.ts';
+import { checkJob } from './check-job.ts';
+import { cutJob } from './cut-job.ts';
+import { estimateJob } from './estimate-job.ts';
 import type { Port } from './port.ts';
 import type { Handlers } from './serve.ts';
 

@@ -1,15 +1,16 @@
 import { MICROMETRES_PER_METRE, MILLIMETRES_PER_METRE } from '#src/base/units.ts';
-import { DEFAULT_PRESSURE, DEFAULTS } from '#src/formats/job/defaults.ts';
-import type { PredictOvercut } from '#src/formats/job/draft.ts';
+import { DEFAULTS } from '#src/formats/job/defaults.ts';
 import { outlineText } from '#src/formats/job/outline-file.ts';
 import { readJob } from '#src/formats/job/read.ts';
-import { type ResolvedJob, resolveJob } from '#src/formats/job/resolve.ts';
+import { type ResolvedJob, type ResolvedPass, resolveJob } from '#src/formats/job/resolve.ts';
 import type { JobFile } from '#src/formats/job/schema.ts';
 import { formatNumber } from '#src/formats/numbers.ts';
 import type { Problem } from '#src/formats/problems.ts';
 import { stockLibrary } from '#src/formats/stock-library.ts';
-import { estimate, estimateTables } from '#src/physics/estimate.ts';
+import type { SlurryFace } from '#src/physics/estimate.ts';
+import type { BrickField } from '#src/voxel/bricks.ts';
 import type { CutSpec } from '#src/voxel/model.ts';
+import { predictOvercut } from './overcut.ts';
 import type { JobRequest, Refused, TakenDefault } from './protocol.ts';
 
 /** A job that holds, in SI, with what was found doubtful. */
@@ -17,23 +18,6 @@ export interface OpenedJob {
   readonly state: 'open';
   readonly job: ResolvedJob;
   readonly warnings: readonly Problem[];
-}
-
-/**
- * Overcut for a tool without an outline: what the estimate says of the entry at the default face pressure. The pressure
- * enters through the time the wall is exposed only, and the overcut grows with the logarithm of that.
- */
-export function predictOvercut(): PredictOvercut {
-  const known = new Map<string, number>();
-  return (conditions, depth, runout) => {
-    const key = JSON.stringify([conditions, depth, runout]);
-    const before = known.get(key);
-    if (before !== undefined) return before;
-    const one = { faceArea: 1e-6, outlineArea: 1e-6, perimeter: 4e-3, pressure: DEFAULT_PRESSURE };
-    const { overcutEntry } = estimate({ conditions, depth, runout, ...one }, estimateTables(conditions));
-    known.set(key, overcutEntry);
-    return overcutEntry;
-  };
 }
 
 /** A job file with the seed and quality of the request in place of its own. */
@@ -54,10 +38,10 @@ function overridden(file: JobFile, { seed, quality }: JobRequest): JobFile {
 
 /** Reads, checks and resolves a job. */
 export function openJob(request: JobRequest): OpenedJob | Refused {
-  const options = { predictOvercut: predictOvercut() };
+  const options = { predictOvercut: predictOvercut(), attachments: request.attachments ?? {} };
   const read = readJob(request.text, options);
   if (!read.job) return { state: 'refused', problems: read.problems };
-  const job = resolveJob(overridden(read.job, request), stockLibrary, options);
+  const job = resolveJob(overridden(read.job, request), stockLibrary, { ...options, checked: read.warnings });
   return { state: 'open', job, warnings: read.warnings };
 }
 
@@ -68,19 +52,33 @@ const QUALITIES = {
   fine: { columnsPerRadius: 3, columnBudget: 8e6 },
 } as const;
 
-/** What is to be cut, for the voxel engine. */
-export function cutSpecOf(job: ResolvedJob): CutSpec {
+/** What one pass of one replicate is to cut, for the voxel engine, on what the passes before it left. */
+export function cutSpecOf(
+  job: ResolvedJob,
+  at: {
+    readonly pass: number;
+    readonly replicate: number;
+    readonly before: BrickField | null;
+    readonly slurry: SlurryFace;
+  },
+): CutSpec {
   const { quality, voxel, seed } = job.cut;
+  const pass = job.passes[at.pass] as ResolvedPass;
   return {
-    conditions: job.conditions,
-    tool: job.tool,
-    edgeRadius: job.edgeRadius,
-    drive: job.feed === undefined ? { kind: 'load', load: job.staticLoad } : { kind: 'feed', feed: job.feed },
-    depth: job.depth,
-    runout: job.runout,
+    conditions: pass.conditions,
+    tool: pass.tool,
+    edgeRadius: pass.edgeRadius,
+    drive: pass.feed === undefined ? { kind: 'load', load: pass.staticLoad } : { kind: 'feed', feed: pass.feed },
+    depth: pass.depth,
+    runout: pass.runout,
     seed,
-    pass: 0,
-    replicate: 0,
+    pass: at.pass,
+    replicate: at.replicate,
+    slurry: at.slurry,
+    face: pass.face,
+    before: at.before,
+    toolLife: pass.toolLife,
+    ...(pass.exit && { exit: pass.exit }),
     ...QUALITIES[quality ?? 'standard'],
     ...(voxel !== undefined && { pitch: voxel }),
   };
@@ -90,13 +88,16 @@ const mm = (metres: number) => `${formatNumber(metres * MILLIMETRES_PER_METRE, 4
 
 /** Values of the defaults that follow from the rest of the job. */
 function followed(job: ResolvedJob): Readonly<Record<string, string>> {
+  const last = job.passes.at(-1) as ResolvedPass;
   return {
-    'tool.outline': outlineText(job.tool),
-    'machine.staticLoadN': `${formatNumber(job.staticLoad, 4)} N`,
+    'tool.outline': outlineText(last.tool),
+    'machine.staticLoadN': `${formatNumber(last.staticLoad, 4)} N`,
     'workpiece.lengthMm': mm(job.stock.length),
     'workpiece.widthMm': mm(job.stock.width),
     'workpiece.thicknessMm': mm(job.stock.thickness),
-    'slurry.largestUm': `${formatNumber(job.conditions.grit.largest * MICROMETRES_PER_METRE, 4)} um`,
+    'slurry.largestUm': `${formatNumber(last.conditions.grit.largest * MICROMETRES_PER_METRE, 4)} um`,
+    ...(last.exit && { 'machine.exitFromMm': mm(last.exit.from) }),
+    ...Object.fromEntries(job.passes.map((pass, k) => [`passes[${k}].tool.outline`, outlineText(pass.tool)])),
   };
 }
 
@@ -111,7 +112,7 @@ const UNITS: readonly (readonly [suffix: string, unit: string])[] = [
 export function takenDefaults(job: ResolvedJob): TakenDefault[] {
   const own = followed(job);
   return job.defaultsUsed.map((path) => {
-    const plain = (DEFAULTS as Readonly<Record<string, string | number>>)[path];
+    const plain = (DEFAULTS as Readonly<Record<string, string | number | boolean>>)[path];
     const unit = UNITS.find(([suffix]) => path.endsWith(suffix))?.[1] ?? '';
     return { path, value: own[path] ?? `${plain ?? ''} ${unit}`.trim() };
   });

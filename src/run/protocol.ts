@@ -8,6 +8,8 @@ export interface JobRequest {
   readonly source: string;
   readonly seed?: number;
   readonly quality?: 'preview' | 'standard' | 'fine';
+  /** Files that stand beside the job, by the names it gives them: drawings and reliefs. */
+  readonly attachments?: Readonly<Record<string, Uint8Array>>;
 }
 
 /** A job that is refused, with everything that is wrong with it. */
@@ -39,12 +41,20 @@ export interface Remark {
   readonly unit: string;
 }
 
+/** How one pass cuts. */
+export interface PassRemarks {
+  readonly title: string;
+  readonly remarks: readonly Remark[];
+}
+
 /** The mean-field answer. */
 export interface Estimated {
   readonly state: 'done';
   readonly result: Result;
   readonly headline: string;
-  readonly remarks: readonly Remark[];
+  /** What limits the job and what would help, in a sentence; null where there is nothing to say. */
+  readonly help: string | null;
+  readonly passes: readonly PassRemarks[];
   readonly notes: readonly string[];
 }
 
@@ -69,6 +79,8 @@ export interface CutDone {
   readonly state: 'done';
   readonly result: Result;
   readonly headline: string;
+  /** What limits the job and what would help, in a sentence; null where there is nothing to say. */
+  readonly help: string | null;
   readonly artefacts: readonly Artefact[];
   /** Digest of all fields: the same for any number of workers. */
   readonly hash: string;

@@ -49,7 +49,11 @@ const CASES: readonly (readonly [string, string | Uint8Array | null, readonly st
     smallJobText({ tool: { outline: { kind: 'circle', diameterMm: 0.6 } } }),
     ['tool.outline', 'larger than the cavity'],
   ],
-  ['a field of a later version', smallJobText({ passes: [] }), ['passes', 'This version']],
+  [
+    'a drawing that is not there',
+    cavity({ outline: { kind: 'drawing', file: 'none.dxf' } }),
+    ['none.dxf', 'beside the job'],
+  ],
 ];
 
 describe('a job that cannot be cut', () => {

@@ -3,8 +3,10 @@ import { pathToFileURL } from 'node:url';
 import { MessageChannel, Worker } from 'node:worker_threads';
 import { afterAll, describe, expect, test } from 'vitest';
 import { portOf, startThreads } from '#src/cli/threads.ts';
+import type { ResolvedPass } from '#src/formats/job/resolve.ts';
 import { createClient, EngineDiedError } from '#src/run/client.ts';
 import { allocateShared, startCrew } from '#src/run/crew.ts';
+import { makeEstimator } from '#src/run/estimates.ts';
 import { cutSpecOf, openJob } from '#src/run/jobs.ts';
 import { cutHash, makeCut, runCut } from '#src/voxel/cut.ts';
 import { createFastKernel } from '#src/voxel/kernels/fast/kernel.ts';
@@ -18,7 +20,12 @@ if (!existsSync(built('tile.worker.js'))) throw new Error('dist is missing: run 
 
 const opened = openJob({ text: shallowJobText(0.03), source: 'test' });
 if (opened.state === 'refused') throw new Error(JSON.stringify(opened.problems));
-const spec: CutSpec = cutSpecOf(opened.job);
+const spec: CutSpec = cutSpecOf(opened.job, {
+  pass: 0,
+  replicate: 0,
+  before: null,
+  slurry: makeEstimator().slurryFace(opened.job.passes[0] as ResolvedPass),
+});
 
 const workers: Worker[] = [];
 afterAll(() => Promise.all(workers.map((worker) => worker.terminate())));

@@ -8,7 +8,7 @@ import { columns } from '../table.ts';
 
 /** Checks a job; returns the exit code. */
 export async function check(path: string, { json }: { readonly json: boolean }): Promise<number> {
-  const answer = await quickEngine().call('check', { text: await readJobFile(path), source: basename(path) });
+  const answer = await quickEngine().call('check', { ...(await readJobFile(path)), source: basename(path) });
   if (answer.state === 'refused') throw refusal(answer.problems, path);
   const { state, ...found } = answer;
   process.stdout.write(json ? `${JSON.stringify({ sound: state === 'sound', ...found })}\n` : report(answer, path));

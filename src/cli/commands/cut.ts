@@ -8,7 +8,7 @@ import { openFolder, type ResultFolder } from '../folder.ts';
 import { onInterrupt } from '../interrupt.ts';
 import { readJobFile, refusal } from '../job-file.ts';
 import { type Meter, meterOn, silent } from '../progress.ts';
-import { figureTable } from '../table.ts';
+import { bandNote, figureTable } from '../table.ts';
 
 /** What `cut` is asked for. */
 export interface CutOptions {
@@ -28,10 +28,10 @@ export function strictCode(result: Result, strict: boolean): number {
 
 /** Cuts a job into a folder; returns the exit code. */
 export async function cut(path: string, options: CutOptions): Promise<number> {
-  const text = await readJobFile(path);
+  const onDisk = await readJobFile(path);
   const { seed, quality } = options;
   const request: JobRequest = {
-    text,
+    ...onDisk,
     source: basename(path),
     ...(seed !== undefined && { seed }),
     ...(quality && { quality }),
@@ -39,7 +39,7 @@ export async function cut(path: string, options: CutOptions): Promise<number> {
   const { quickEngine } = await import('../quick-engine.ts');
   const checked = await quickEngine().call('check', request);
   if (checked.state === 'refused') throw refusal(checked.problems, path);
-  const folder = await openFolder(options.out, text, options.force);
+  const folder = await openFolder(options.out, onDisk, options.force);
   const engine = threadedEngine(options.workers ?? defaultWorkers());
   const meter = options.json ? silent : meterOn(process.stderr);
   try {
@@ -80,7 +80,7 @@ async function run(engine: Engine, request: JobRequest, meter: Meter, folder: Re
   }
 }
 
-function report({ result, headline, artefacts, notes }: CutDone, folder: ResultFolder, json: boolean): void {
+function report({ result, headline, help, artefacts, notes }: CutDone, folder: ResultFolder, json: boolean): void {
   if (json) {
     process.stdout.write(`${JSON.stringify(result)}\n`);
     return;
@@ -88,7 +88,7 @@ function report({ result, headline, artefacts, notes }: CutDone, folder: ResultF
   const names = artefacts.map(({ name }) => name).join(', ');
   const warnings = result.warnings.map(({ path, message }) => `Warning${path === '' ? '' : `, ${path}`}: ${message}\n`);
   process.stdout.write(
-    `${headline}\n\n${figureTable(result)}\n\n${[...warnings, ...notes.map((note) => `${note}\n`)].join('')}` +
+    `${headline}\n${help === null ? '' : `${help}\n`}\n${figureTable(result)}\n\n${bandNote(result)}\n\n${[...warnings, ...notes.map((note) => `${note}\n`)].join('')}` +
       `Written to ${folder.path}: ${names}\n`,
   );
 }
