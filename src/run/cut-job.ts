@@ -3,12 +3,12 @@ import { type HistoryMoment, writeHistory, writeTrace } from '#src/formats/csv.t
 import { verdictHeadline } from '#src/formats/drawing.ts';
 import type { ResolvedJob } from '#src/formats/job/resolve.ts';
 import { type ResultWarning, writeResult } from '#src/formats/result.ts';
-import type { Figures } from '#src/planning/figures.ts';
+import type { Figures, FigureValues } from '#src/planning/figures.ts';
 import { withBands } from '#src/planning/job-bands.ts';
 import { COMBINED_NOTES, combineValues } from './combine.ts';
 import { type CutTools, cutPasses, type DonePass, progressOver } from './cut-passes.ts';
 import { cavityPng, type Drawable, isMeasured, sectionCurve, sectionSvg, traceSvg } from './drawings.ts';
-import { answerJob, helpFor } from './estimate-job.ts';
+import { answerJob, helpFor, type JobAnswer } from './estimate-job.ts';
 import { makeEstimator } from './estimates.ts';
 import { cutWords, type FigureWords, figuresOf } from './figures.ts';
 import { openJob } from './jobs.ts';
@@ -32,20 +32,20 @@ export async function cutJob(request: JobRequest, context: CallContext, tools: C
   context.report('progress', () => ({ ...NOT_STARTED }));
   const progress = progressOver(job, context);
   const estimator = makeEstimator();
-  const first = await cutPasses(job, { replicate: 0, context, tools, progress, estimator });
-  const last = first.at(-1) as DonePass;
-  const own = wholeFigures(job, first);
-  const runs = [own];
-  for (let replicate = 1; replicate < job.cut.replicates; replicate++) {
-    runs.push(wholeFigures(job, await cutPasses(job, { replicate, context, tools, progress, estimator })));
-  }
-  await context.breathe();
   const answer = answerJob(job, estimator);
   await context.breathe();
+  const first = await cutPasses(job, { replicate: 0, context, tools, progress, estimator });
+  const last = first.at(-1) as DonePass;
+  const own = wholeFigures(job, first, answer);
+  const runs = [own];
+  for (let replicate = 1; replicate < job.cut.replicates; replicate++) {
+    runs.push(wholeFigures(job, await cutPasses(job, { replicate, context, tools, progress, estimator }), answer));
+  }
   const figures = withBands(own, answer.bands.bands, runs);
   const help = helpFor(job, figures, answer, { estimator, attachments: request.attachments });
   await context.breathe();
-  const drawable: Drawable = { job, ...last };
+  const time = first.reduce((sum, { measures }) => sum + measures.time, 0);
+  const drawable: Drawable = { job, ...last, time };
   const result = resultOf({
     job,
     figures,
@@ -91,11 +91,21 @@ function artefact(name: Artefact['name'], content: string | Uint8Array<ArrayBuff
 
 const wordsOf = ({ pass, measures, texture }: DonePass): FigureWords => cutWords(pass, measures, texture);
 
+/** What the last measurement found of all passes together: chips and damage that are left are in the voxels. */
+function asMeasured(passes: readonly DonePass[]): Partial<FigureValues> {
+  const { edgeChipMaxUm, edgeChipP95Um, damageDepthUm, damageDepthLargestUm } = (passes.at(-1) as DonePass).values;
+  return { edgeChipMaxUm, edgeChipP95Um, damageDepthUm, damageDepthLargestUm };
+}
+
 /** The figures of all passes together, without bands. */
-function wholeFigures(job: ResolvedJob, passes: readonly DonePass[]): Figures {
+function wholeFigures(job: ResolvedJob, passes: readonly DonePass[], { nominal }: JobAnswer): Figures {
   const words = wordsOf(passes.at(-1) as DonePass);
-  const notes = job.passes.length > 1 ? { ...words.notes, ...COMBINED_NOTES } : words.notes;
-  return figuresOf(combineValues(passes), { ...words, ...(notes && { notes }) });
+  const more = { rateBestLoadN: 'from the estimate', ...(job.passes.length > 1 && COMBINED_NOTES) };
+  const { rateBestLoadN } = nominal.values;
+  return figuresOf(
+    { ...combineValues(passes, asMeasured(passes)), rateBestLoadN },
+    { ...words, notes: { ...words.notes, ...more } },
+  );
 }
 
 /** The pictures of a cut, and the trace as numbers. */

@@ -28,6 +28,8 @@ export interface Drawable {
   readonly job: ResolvedJob;
   /** The pass that has just been cut; the last one where left out. */
   readonly pass?: ResolvedPass;
+  /** Machining time of all passes so far (s); that of the pass where left out. */
+  readonly time?: number;
   readonly cut: Cut;
   readonly bricks: BrickField;
   readonly measures: CutMeasures;
@@ -239,7 +241,7 @@ function overlaySvg(
       caption: {
         title: titleOf(job),
         grit: gritText(job, passOf(drawable)),
-        time: measures.time,
+        time: drawable.time ?? measures.time,
         seed: job.cut.seed,
         version,
       },

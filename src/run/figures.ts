@@ -100,7 +100,8 @@ export function cutValues(pass: ResolvedPass, measures: CutMeasures, texture: Fl
     toolWearRatio: m.toolWearRatio,
     toolEdgeRadiusUm: um(m.toolEdgeRadius),
     toolSideLossUm: um(m.toolSideLoss),
-    stallMargin: m.stallMargin,
+    // one where the exchange breaks down at no load that was looked at
+    stallMargin: m.stallMargin ?? 1,
     rateBestLoadN: m.bestPressure === null ? null : m.bestPressure * pass.toolArea,
     impacts: m.impacts,
   };

@@ -67,6 +67,7 @@ export function cutSpecOf(
   return {
     conditions: pass.conditions,
     tool: pass.tool,
+    bores: pass.bores,
     edgeRadius: pass.edgeRadius,
     drive: pass.feed === undefined ? { kind: 'load', load: pass.staticLoad } : { kind: 'feed', feed: pass.feed },
     depth: pass.depth,
