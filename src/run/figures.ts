@@ -115,6 +115,7 @@ export function cutWords(pass: ResolvedPass, measures: CutMeasures, texture: Flo
   const departures = texture && texture.departures.length > 0 ? texture.departures.join('; ') : undefined;
   return {
     notes: {
+      ...(pass.exit && measures.exitChip && { floorSizeMm: 'at the exit', overcutFloorUm: 'at the exit' }),
       floorFlatnessUm: `${Math.round(um(measures.flatnessMargin))} um inside the tool's outline are left out`,
       ...(departures !== undefined && { floorRaUm: departures, floorRzUm: departures }),
     },

@@ -36,6 +36,7 @@ export function drawRuler(drawing: OverlayDrawing): void {
     'mm',
     [
       { x: x - 14 * unit, y: down(deepest) + 18 * unit, anchor: 'end' },
+      { x: x - 14 * unit, y: face - 22 * unit, anchor: 'end' },
       { x: x + 8 * unit, y: down(deepest) + 4 * unit },
     ],
     { colour: palette.ink2, size: 11 },
