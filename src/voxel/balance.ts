@@ -35,6 +35,71 @@ export function emptyCounts(means: GapMeans): HeightCounts {
   };
 }
 
+/** What a column is counted by, worked out once a count. */
+export interface Counting {
+  readonly field: Field;
+  readonly means: GapMeans;
+  readonly out: HeightCounts;
+  readonly face: number;
+  /** Distance beyond the start of the curved edge that the largest grain reaches (m), and zones of it a metre. */
+  readonly reach: number;
+  readonly zonesPerMetre: number;
+  readonly edged: boolean;
+  readonly tileZones: Uint8Array | undefined;
+}
+
+/** Empties the counts and settles how columns are counted. */
+export function beginCount(
+  out: HeightCounts,
+  field: Field,
+  tables: KernelTables,
+  means: GapMeans,
+  at: { face: number; stride: number; tileZones?: Uint8Array | undefined },
+): Counting {
+  const reach =
+    (tables.coefficients[COEFFICIENT.largest] as number) / 2 + (tables.coefficients[COEFFICIENT.edgeRadius] as number);
+  out.counts.fill(0);
+  out.first.fill(out.bins);
+  out.last.fill(0);
+  out.reference = at.face;
+  out.weight = at.stride;
+  out.faceColumns = 0;
+  out.faceMean = 0;
+  return {
+    field,
+    means,
+    out,
+    face: at.face,
+    reach,
+    zonesPerMetre: (means.zones.length - means.flat) / reach,
+    edged: field.edges.length > 0,
+    tileZones: at.tileZones,
+  };
+}
+
+/** Counts one column that stands below the face; adds its height to `faceMean` when it lies under the flat face. */
+export function countColumn(counting: Counting, c: number): void {
+  const { field, means, out, face, reach } = counting;
+  const h = field.heights[c] as number;
+  if (h <= OUT_OF_REACH) return;
+  const e = counting.edged ? (field.edges[c] as number) : 0;
+  const lift = e > 0 ? means.lift : 0;
+  if (e >= reach || h >= face + lift) return;
+  const { flat, zones } = means;
+  let zone = 0;
+  if (e > 0) zone = flat + Math.min(zones.length - flat - 1, Math.floor(e * counting.zonesPerMetre));
+  else if (counting.tileZones) zone = counting.tileZones[tileOf(field, c)] as number;
+  if (e <= 0) {
+    out.faceColumns++;
+    out.faceMean += h;
+  }
+  const bin = Math.min(out.bins - 1, Math.floor((face - h + lift) * (1 / means.step)));
+  const k = zone * out.bins + bin;
+  out.counts[k] = (out.counts[k] as number) + 1;
+  if (bin < (out.first[zone] as number)) out.first[zone] = bin;
+  if (bin >= (out.last[zone] as number)) out.last[zone] = bin + 1;
+}
+
 /**
  * Counts every `stride`-th column that stands below `face`. Columns the tool has passed and columns beyond the reach of
  * the largest grain are left out.
@@ -44,45 +109,11 @@ export function countHeights(
   field: Field,
   tables: KernelTables,
   means: GapMeans,
-  at: { face: number; stride: number; tileZones?: Uint8Array },
+  at: { face: number; stride: number; tileZones?: Uint8Array | undefined },
 ): HeightCounts {
-  const { heights, edges } = field;
-  const { counts, bins, first, last } = out;
-  const { face, stride, tileZones } = at;
-  const zones = means.zones.length;
-  const reach =
-    (tables.coefficients[COEFFICIENT.largest] as number) / 2 + (tables.coefficients[COEFFICIENT.edgeRadius] as number);
-  const { flat } = means;
-  const zonesPerMetre = (zones - flat) / reach;
-  counts.fill(0);
-  first.fill(bins);
-  last.fill(0);
-  out.reference = face;
-  out.weight = stride;
-  out.faceColumns = 0;
-  let sum = 0;
-  const perStep = 1 / means.step;
-  const edged = edges.length > 0;
-  for (let c = 0; c < heights.length; c += stride) {
-    const h = heights[c] as number;
-    if (h <= OUT_OF_REACH) continue;
-    const e = edged ? (edges[c] as number) : 0;
-    const lift = e > 0 ? means.lift : 0;
-    if (e >= reach || h >= face + lift) continue;
-    let zone = 0;
-    if (e > 0) zone = flat + Math.min(zones - flat - 1, Math.floor(e * zonesPerMetre));
-    else if (tileZones) zone = tileZones[tileOf(field, c)] as number;
-    if (e <= 0) {
-      out.faceColumns++;
-      sum += h;
-    }
-    const bin = Math.min(bins - 1, Math.floor((face - h + lift) * perStep));
-    const k = zone * bins + bin;
-    counts[k] = (counts[k] as number) + 1;
-    if (bin < (first[zone] as number)) first[zone] = bin;
-    if (bin >= (last[zone] as number)) last[zone] = bin + 1;
-  }
-  out.faceMean = out.faceColumns > 0 ? sum / out.faceColumns : 0;
+  const counting = beginCount(out, field, tables, means, at);
+  for (let c = 0; c < field.heights.length; c += at.stride) countColumn(counting, c);
+  out.faceMean = out.faceColumns > 0 ? out.faceMean / out.faceColumns : 0;
   return out;
 }
 

@@ -20,7 +20,11 @@ export interface BrickField {
   readonly x0: number;
   readonly y0: number;
   readonly z0: number;
-  /** Brick number, ALL_SOLID or ALL_EMPTY, of each brick, (nx/8) x (ny/8) x (nz/8), x fastest. */
+  /** Depth of the exit face (m), below which there is air; no exit face within reach if left out. */
+  readonly thickness?: number;
+  /** Process time over which `age` runs (s). */
+  readonly time?: number;
+  /** Brick number, ALL_SOLID or ALL_EMPTY, of each brick, (nx/8) x (ny/8) x (nz/8), x fastest. Bricks may be shared. */
   readonly table: Int32Array;
   /** Number of stored bricks. */
   readonly count: number;
@@ -32,9 +36,9 @@ export interface BrickField {
   readonly age: Uint8Array;
 }
 
-/** Solid fraction 0..255 of voxel (i, j, k); outside the grid the work is solid, above the entry face empty. */
+/** Solid fraction 0..255 of voxel (i, j, k); outside the grid the work is solid, above and below the work empty. */
 export function solidAt(bricks: BrickField, i: number, j: number, k: number): number {
-  if (k < 0) return 0;
+  if (k < 0 || (bricks.thickness !== undefined && k * bricks.pitch >= bricks.thickness)) return 0;
   if (i < 0 || j < 0 || i >= bricks.nx || j >= bricks.ny || k >= bricks.nz) return 255;
   const bx = bricks.nx >> 3;
   const by = bricks.ny >> 3;

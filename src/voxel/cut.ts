@@ -1,12 +1,13 @@
 import type { Profile } from '#src/base/field.ts';
 import { pow } from '#src/base/math.ts';
 import { craterLaw } from '#src/physics/crater.ts';
-import { advance, isDone, loadCounts } from './advance.ts';
+import { advance, isDone } from './advance.ts';
+import { loadBinEdge, loadCounts } from './book.ts';
 import type { Allocate } from './field.ts';
-import { LOAD_BIN_FIRST_EXPONENT, LOAD_BINS, LOAD_BINS_PER_OCTAVE } from './kernels/contract.ts';
+import { LOAD_BINS } from './kernels/contract.ts';
 import { type CutModel, type CutSpec, makeModel } from './model.ts';
 import type { TileRunner } from './runner.ts';
-import { type CutState, makeState, SCALAR, saveState } from './state.ts';
+import { type CutState, ENDED, makeState, SCALAR, saveState } from './state.ts';
 
 /** Records of the history per depth asked for. */
 const RECORDS = 240;
@@ -30,6 +31,10 @@ export interface CutRecord {
   readonly freshFraction: number;
   /** What is left of the load at which the slurry's exchange breaks down: 1 - load / stall load; null where it does not. */
   readonly stallMargin: number | null;
+  /** The load has been more than slurry or grits can carry, now or before. */
+  readonly stalled: boolean;
+  /** Area of the face in contact (m2). */
+  readonly contactArea: number;
   /** Length the tool has lost and the radius of its edge (m). */
   readonly toolLost: number;
   readonly toolEdgeRadius: number;
@@ -64,21 +69,26 @@ export function runCut(cut: Cut, runner: TileRunner, steps: number): boolean {
   for (let k = 0; k < steps; k++) {
     if (isDone(model, state)) return true;
     advance(model, state, runner);
+    if ((s[SCALAR.cycles] as number) === 0) continue;
     const depth = -(s[SCALAR.floorMean] as number);
     if (depth >= (s[SCALAR.nextRecordDepth] as number) || isDone(model, state)) {
       cut.records.push(recordOf(cut));
-      s[SCALAR.nextRecordDepth] = depth + model.spec.depth / RECORDS;
+      s[SCALAR.nextRecordDepth] = depth + (model.endDepth - (s[SCALAR.startDepth] as number)) / RECORDS;
     }
-    if ((s[SCALAR.step] as number) > FRUITLESS_STEPS && depth < 1e-9) {
+    if ((s[SCALAR.step] as number) > FRUITLESS_STEPS && depth < (s[SCALAR.startDepth] as number) + 1e-9) {
       throw new RangeError('this setting removes nothing: no grain reaches both faces hard enough');
     }
   }
   return isDone(model, state);
 }
 
-/** Depth reached over the depth asked for, 0 to 1. */
-export function progressOf(cut: Cut): number {
-  return Math.min(1, -(cut.state.scalars[SCALAR.floorMean] as number) / cut.model.spec.depth);
+/** Share of the way from first contact to the depth asked for, 0 to 1. */
+export function progressOf({ model, state }: Cut): number {
+  const s = state.scalars;
+  if ((s[SCALAR.ended] as number) !== ENDED.not) return 1;
+  const start = s[SCALAR.startDepth] as number;
+  const way = model.endDepth - start;
+  return way > 0 ? Math.max(0, Math.min(1, (-(s[SCALAR.floorMean] as number) - start) / way)) : 1;
 }
 
 function recordOf(cut: Cut): CutRecord {
@@ -89,12 +99,15 @@ function recordOf(cut: Cut): CutRecord {
   const cycles = at(SCALAR.recentTime);
   const last = records.at(-1);
   const time = at(SCALAR.time);
-  const depth = -at(SCALAR.floorMean);
+  const depth = Math.max(last?.depth ?? 0, -at(SCALAR.floorMean));
+  // the last ligament breaks out at once: what it skips is no rate
+  const broke = at(SCALAR.brokeThrough);
+  const sunk = broke > (last?.depth ?? 0) ? Math.min(depth, broke) : depth;
   const since = time - (last?.time ?? 0);
   const record: CutRecord = {
     time,
     depth,
-    rate: since > 0 ? (depth - (last?.depth ?? 0)) / since : 0,
+    rate: since > 0 ? (sunk - (last?.depth ?? at(SCALAR.startDepth))) / since : 0,
     setLoad: at(SCALAR.setLoad),
     sampledLoad: cycles > 0 ? (at(SCALAR.recentImpulse) * frequency) / cycles : 0,
     engaged: cycles > 0 ? at(SCALAR.recentImpacts) / cycles : 0,
@@ -102,8 +115,10 @@ function recordOf(cut: Cut): CutRecord {
     largestLoad: at(SCALAR.recentLargestLoad),
     freshFraction: at(SCALAR.freshShare),
     stallMargin: stallMarginOf(cut),
+    stalled: at(SCALAR.stalled) === 1,
+    contactArea: at(SCALAR.contactArea),
     toolLost: at(SCALAR.toolLost),
-    toolEdgeRadius: model.spec.edgeRadius,
+    toolEdgeRadius: at(SCALAR.edgeRadius),
     edgeChip: largestChipWidth(cut),
     damageDepth: damageQuantile(cut, 0.99),
   };
@@ -124,23 +139,50 @@ function recordOf(cut: Cut): CutRecord {
 export function stallMarginOf({ model, state }: Cut): number | null {
   const stall = state.scalars[SCALAR.stall] as number;
   if (!(stall > 0)) return null;
-  return 1 - (state.scalars[SCALAR.setLoad] as number) / model.outline.area / stall;
+  const contact = model.partial ? (state.scalars[SCALAR.contactArea] as number) : model.outline.area;
+  return contact > 0 ? 1 - (state.scalars[SCALAR.setLoad] as number) / contact / stall : null;
+}
+
+/** How a cut has come to its end, or stands so far. */
+export interface CutEnd {
+  /** Depth of the tip's floor, at most the thickness of the work (m). */
+  readonly depth: number;
+  /** The load was more than the slurry, or the grits at all, can carry from `stallDepth` on (m; null where it never was). */
+  readonly stalled: boolean;
+  readonly stallDepth: number | null;
+  /** The cut was given up over it. */
+  readonly gaveUp: boolean;
+  /** The tool had lost all the length it may lose. */
+  readonly ranOut: boolean;
+  /** The tool has come out at the exit face. */
+  readonly through: boolean;
+}
+
+/** How a cut has ended, or stands so far. */
+export function endOf({ model, state }: Cut): CutEnd {
+  const at = (k: number) => state.scalars[k] as number;
+  const stalled = at(SCALAR.stalled) === 1;
+  return {
+    depth: Math.max(0, Math.min(-at(SCALAR.floorMean), model.spec.exit?.thickness ?? Number.POSITIVE_INFINITY)),
+    stalled,
+    stallDepth: stalled ? at(SCALAR.stallDepth) : null,
+    gaveUp: at(SCALAR.ended) === ENDED.stalled,
+    ranOut: at(SCALAR.ended) === ENDED.ranOut,
+    through: at(SCALAR.brokeThrough) > 0,
+  };
 }
 
 /** Widest chip on the entry face (m). */
 export function largestChipWidth(cut: Cut): number {
   let deepest = 0;
-  for (const { rim } of cut.state.walls) for (const deep of rim.chips) if (deep > deepest) deepest = deep;
+  const rims = cut.state.walls.slice(0, cut.model.toolLoops);
+  for (const { rim } of rims) for (const deep of rim.chips) if (deep > deepest) deepest = deep;
   return deepest * cut.model.spec.conditions.constants.chipWidthRatio;
 }
 
 /** Edges of the load histogram's bins (N), LOAD_BINS + 1. */
 export function loadBinEdges(): Float64Array {
-  return Float64Array.from({ length: LOAD_BINS + 1 }, (_, k) => {
-    const octave = Math.floor(k / LOAD_BINS_PER_OCTAVE);
-    const inside = (k % LOAD_BINS_PER_OCTAVE) / LOAD_BINS_PER_OCTAVE;
-    return 2 ** (LOAD_BIN_FIRST_EXPONENT + octave) * (1 + inside);
-  });
+  return Float64Array.from({ length: LOAD_BINS + 1 }, (_, k) => loadBinEdge(k));
 }
 
 /** Hits of the floor, each for what it stands for, by the depth of the crack they left: bin edges (m) and counts. */

@@ -12,10 +12,13 @@ export interface Workpiece {
   readonly tileZones: Uint8Array | null;
 }
 
+/** Bits of a task that number the tile; the others number the piece. */
+const TILE_BITS = 18;
+
 /** What the tiles of a step need: the fields in a fixed order, and the tables. */
 export interface TileWork {
   readonly pieces: readonly Workpiece[];
-  /** Tasks of each of the four colours; a task is (piece << 24) | tile. */
+  /** Tasks of each of the four colours; a task is (piece << TILE_BITS) | tile. */
   readonly colours: readonly Int32Array[];
 }
 
@@ -31,7 +34,7 @@ export function tileWork(pieces: readonly Workpiece[]): TileWork {
     for (let tile = 0; tile < field.tilesX * field.tilesY; tile++) {
       const tx = tile % field.tilesX;
       const ty = Math.floor(tile / field.tilesX);
-      (colours[(tx & 1) | ((ty & 1) << 1)] as number[]).push((piece << 24) | tile);
+      (colours[(tx & 1) | ((ty & 1) << 1)] as number[]).push((piece << TILE_BITS) | tile);
     }
   });
   return { pieces, colours: colours.map((tasks) => Int32Array.from(tasks)) };
@@ -43,7 +46,7 @@ export function tileWork(pieces: readonly Workpiece[]): TileWork {
  */
 export function piecesOf(model: CutModel, state: CutState): Workpiece[] {
   const fresh = [model.tables.kernel];
-  const zones = state.zones?.zones ?? fresh;
+  const { zones } = state.zones;
   const middle = [zones[zones.length >> 1] as KernelTables];
   const tileZones = model.slurry?.tileZones ?? null;
   return [
@@ -61,9 +64,9 @@ export function piecesOf(model: CutModel, state: CutState): Workpiece[] {
 
 /** Hits the tile of one task. */
 export function runTask(kernel: Kernel, work: TileWork, task: number): void {
-  const piece = work.pieces[task >> 24] as Workpiece;
+  const piece = work.pieces[task >> TILE_BITS] as Workpiece;
   if (piece.step[STEP.active] !== 1) return;
-  const tile = task & 0xffffff;
+  const tile = task & ((1 << TILE_BITS) - 1);
   const tables = piece.tables[piece.tileZones ? (piece.tileZones[tile] as number) : 0] as KernelTables;
   if (piece.rim) kernel.hitWall(piece.field, tables, piece.step, tile, piece.rim);
   else kernel.hitFloor(piece.field, tables, piece.step, tile);

@@ -1,26 +1,34 @@
 import { exp } from '#src/base/math.ts';
-import type { SlurryFace } from '#src/physics/estimate.ts';
-import { contactRows, type GapSums, gapSums } from '#src/physics/gap-sums.ts';
+import { type EstimateTables, estimateTables, type SlurryFace, usedPopulation } from '#src/physics/estimate.ts';
+import { type GapSums, gapSums } from '#src/physics/gap-sums.ts';
 import { CLASS_STEP } from '#src/physics/grit-law.ts';
 import type { FaceShape } from '#src/physics/process/face.ts';
-import { agedShares, placeAt } from '#src/physics/process/place.ts';
 import {
-  type CurvePlaces,
-  curvePlaces,
-  pointAt,
-  type SlurrySetting,
-  slurryCurve,
-  type ZoneState,
-} from '#src/physics/process/slurry-curve.ts';
+  bestOf,
+  type LoadSearch,
+  loadSearch,
+  pointOf,
+  stallOf,
+  workingPoint,
+} from '#src/physics/process/load-search.ts';
+import { agedShares, placeAt } from '#src/physics/process/place.ts';
+import { type CurvePlaces, type CurvePoint, curvePlaces, type ZoneState } from '#src/physics/process/slurry-curve.ts';
 import type { Conditions } from '#src/physics/records.ts';
 import type { Allocate, FieldSpec } from './field.ts';
 import { COEFFICIENT, COEFFICIENTS, type KernelTables } from './kernels/contract.ts';
 import { type CutTables, fillMeans, type GapMeans, grainProbability, type ZoneGrit } from './tables.ts';
 
+/** Share of the highest pressure below which the freshest zone is past its best. */
+const PAST_TOP = 0.9;
+
 /** The slurry under the face as a cut uses it: what does not change while it runs. */
 export interface SlurryModel {
-  readonly setting: SlurrySetting;
-  readonly sums: GapSums;
+  readonly conditions: Conditions;
+  readonly face: SlurryFace;
+  /** Area of the face and depth of the cut, for a charge that goes round (m2, m). */
+  readonly area: number;
+  readonly depth: number;
+  readonly tables: EstimateTables;
   readonly places: CurvePlaces;
   /** Zone of the face each tile of the floor lies in. */
   readonly tileZones: Uint8Array;
@@ -37,14 +45,21 @@ export interface ZoneTables {
 export function makeSlurry(
   conditions: Conditions,
   face: SlurryFace,
-  grid: { readonly field: FieldSpec; readonly x0: number; readonly y0: number },
+  at: {
+    readonly grid: { readonly field: FieldSpec; readonly x0: number; readonly y0: number };
+    readonly area: number;
+    readonly depth: number;
+  },
 ): SlurryModel {
-  const sums = gapSums(contactRows(conditions));
+  const tables = estimateTables(conditions);
   return {
-    setting: { conditions, shape: face.shape, carrier: face.carrier, constants: face.constants },
-    sums,
-    places: curvePlaces(sums),
-    tileZones: mapTiles(face.shape, grid),
+    conditions,
+    face,
+    area: at.area,
+    depth: at.depth,
+    tables,
+    places: curvePlaces(tables.sums),
+    tileZones: mapTiles(face.shape, at.grid),
   };
 }
 
@@ -90,9 +105,47 @@ export function makeZoneTables(tables: KernelTables, zones: number, allocate: Al
 export interface SlurryState {
   /** Pressure at which the exchange breaks down at this depth (Pa). */
   readonly stall: number;
-  readonly carried: boolean;
+  /** The pressure is above that: the face is starved. */
+  readonly stalled: boolean;
+  readonly gap: number;
+  readonly roughness: number;
+  /** Rate of sinking and of tool loss of a steady floor here, and the rate at the best load (m/s). */
+  readonly rate: number;
+  readonly toolRate: number;
+  readonly best: number;
+  readonly bestPressure: number;
+  /** Flow through the face (m3/s). */
+  readonly flow: number;
   /** Engaged grits over those of fresh slurry at the same gap, mean over the face. */
   readonly fresh: number;
+}
+
+/** Where the slurry is worked out. */
+export interface SlurryPlace {
+  /** Depth of the tip (m), and the load over the area in contact (Pa). */
+  readonly depth: number;
+  readonly pressure: number;
+  /** Only a small part of the face is in contact: slurry as fresh as in the freshest zone, at the rim, reaches all of it. */
+  readonly rim: boolean;
+  /** Process time (s), for a charge that goes round. */
+  readonly time: number;
+}
+
+/** Curve of a place; its grit is the grade's own, or that of a charge as it is by now. */
+function searchAt(model: SlurryModel, at: SlurryPlace): { search: LoadSearch; sums: GapSums } {
+  const { conditions, face, tables, places } = model;
+  const setting = { conditions, shape: face.shape, carrier: face.carrier, constants: face.constants };
+  if (!face.charge) return { search: loadSearch(setting, places, at.depth), sums: tables.sums };
+  const { volume, used } = face.charge;
+  const { pressure } = at;
+  const use = { slurry: face, volume, used: used + at.time, pressure, area: model.area, depth: model.depth / 2 };
+  const sums = gapSums(tables.sums.rows, usedPopulation(tables, use));
+  return { search: loadSearch(setting, curvePlaces(sums), at.depth), sums };
+}
+
+/** Whether the exchange breaks down at a place. */
+export function stalledAt(model: SlurryModel, at: SlurryPlace): boolean {
+  return !at.rim && workingPoint(searchAt(model, at).search, at.pressure).stalled;
 }
 
 /** Works out the zones at a depth under a face pressure and writes their tables and means. */
@@ -100,22 +153,54 @@ export function renewSlurry(
   model: SlurryModel,
   tables: CutTables,
   into: { readonly zones: ZoneTables; readonly means: GapMeans },
-  at: { readonly depth: number; readonly pressure: number },
+  at: SlurryPlace,
 ): SlurryState {
-  const { setting, sums, places } = model;
-  const curve = slurryCurve(setting, places, at.depth);
-  const point = pointAt(curve, at.pressure);
+  const { search, sums } = searchAt(model, at);
+  const working = workingPoint(search, at.pressure);
+  const point = at.rim ? rimPoint(search, at.pressure) : working.point;
   const place = placeAt(sums, point.gap, point.roughness, 1);
-  const grits = point.zones.map((zone): ZoneGrit & { readonly state: ZoneState } => ({
-    state: zone,
-    useful: zone.useful,
-    shares: agedShares(place, zone.age, new Float64Array(place.impulse.length)),
-  }));
+  const grits = point.zones.map(
+    (zone): ZoneGrit => ({
+      useful: zone.useful,
+      shares: agedShares(place, zone.age, new Float64Array(place.impulse.length)),
+    }),
+  );
   grits.forEach((grit, k) => {
     writeGrit(into.zones.zones[k] as KernelTables, sums, grit);
   });
-  fillMeans(into.means, setting.conditions, tables, grits);
-  return { stall: curve.stall, carried: point.carried, fresh: freshShare(sums, point.gap, grits) };
+  fillMeans(into.means, model.conditions, tables, grits);
+  const best = bestOf(search) ?? point;
+  return {
+    stall: stallOf(search),
+    stalled: !at.rim && working.stalled,
+    gap: point.gap,
+    roughness: point.roughness,
+    rate: point.rate,
+    toolRate: point.toolRate,
+    best: best.rate,
+    bestPressure: best.pressure,
+    flow: point.flow,
+    fresh: freshShare(sums, point.gap, grits),
+  };
+}
+
+/** The point at which the freshest zone alone bears a pressure, that zone's state everywhere; the one that bears most if none does. */
+function rimPoint(search: LoadSearch, pressure: number): CurvePoint {
+  const rim = (step: number) => pointOf(search, step).zones[0] as ZoneState;
+  let best = 1;
+  for (let step = 1; step <= search.places.last; step++) {
+    if (rim(step).pressure > rim(best).pressure) best = step;
+    if (rim(best).pressure >= pressure || rim(step).pressure < PAST_TOP * rim(best).pressure) break;
+  }
+  const state = rim(best);
+  const point = pointOf(search, best);
+  return {
+    ...point,
+    pressure: state.pressure,
+    rate: state.useful * state.rate,
+    toolRate: state.useful * state.toolRate,
+    zones: point.zones.map(() => state),
+  };
 }
 
 function freshShare(sums: GapSums, gap: number, grits: readonly ZoneGrit[]): number {

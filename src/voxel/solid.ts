@@ -1,247 +1,220 @@
+import { BrickStore } from './brick-store.ts';
 import { ALL_EMPTY, ALL_SOLID, BRICK, BRICK_VOXELS, type BrickField } from './bricks.ts';
+import { ColumnReader } from './columns.ts';
+import { EarlierReader, type VoxelGrid, voxelAxes } from './earlier.ts';
 import { OUT_OF_REACH } from './kernels/contract.ts';
 import type { CutModel } from './model.ts';
-import { type CutState, SCALAR, type WallState } from './state.ts';
+import { type CutState, SCALAR } from './state.ts';
 
 /** Room below the floor for cracks and for the picture's cut face (m). */
 const BELOW = 120e-6;
 
-/** A column of the solid on its way into bricks. */
-interface Column {
-  /** Depth of the floor surface and of the deepest crack tip (m). */
-  surface: number;
-  crack: number;
-  age: number;
-  /** Distance outside the tool's outline (m), NaN under the face. */
-  outside: number;
-  wall: WallState | null;
-  cell: number;
-  rimCell: number;
+/** The voxels of the result, and where the floor's bricks begin among them. */
+interface ResultGrid {
+  readonly bx: number;
+  readonly by: number;
+  readonly bz: number;
+  readonly pitch: number;
+  readonly x0: number;
+  readonly y0: number;
+  /** Bricks of the result before the first of the floor. */
+  readonly left: number;
+  readonly above: number;
 }
 
 /**
  * Builds the voxels of the solid from the three fields that carry it: the floor's height per column, the wall's offset
- * along the outline and the rim's chips. Voxels are cubes of the floor's pitch; nothing else holds the undercut of a
- * barrelled wall. Bricks wholly above or below the surface are not stored.
+ * along the outline and the rim's chips, with what earlier passes have left. Voxels are cubes of the floor's pitch on a
+ * grid that covers both cavities; nothing else holds the undercut of a barrelled wall. Bricks wholly above or below the
+ * surface are not stored; below an exit face there is air.
  */
 export function buildBricks(model: CutModel, state: CutState): BrickField {
-  const { floor } = state;
-  const pitch = floor.dx;
-  let deepest = 0;
-  for (const h of floor.heights) if (h > OUT_OF_REACH && -h > deepest) deepest = -h;
-  const nz = Math.ceil((deepest + BELOW) / pitch / BRICK) * BRICK;
-  const bx = floor.nx / BRICK;
-  const by = floor.ny / BRICK;
-  const bz = nz / BRICK;
+  const before = model.spec.before ?? null;
+  const grid = resultGrid(model, state);
+  const { bx, by, bz, pitch } = grid;
+  const time = state.scalars[SCALAR.time] as number;
+  const earlierTime = before?.time ?? 0;
+  const whole = earlierTime + time;
+  const columns = new ColumnReader(model, state, {
+    ages: { before: earlierTime, perSecond: whole > 0 ? 254 / whole : 0 },
+    bottom: bz * BRICK * pitch,
+  });
+  const earlier = before ? new EarlierReader(before, axesOf(grid), whole > 0 ? earlierTime / whole : 1) : null;
   const table = new Int32Array(bx * by * bz).fill(ALL_SOLID);
   const store = new BrickStore();
-  const columns = new ColumnReader(model, state);
+  const plate = model.spec.exit ? new PlateBottom(model.spec.exit.thickness, pitch, store) : null;
   for (let j = 0; j < by; j++) {
     for (let i = 0; i < bx; i++) {
-      columns.load(i * BRICK, j * BRICK);
+      const own = i >= grid.left && j >= grid.above && isOn(model, i - grid.left, j - grid.above);
+      if (own) columns.load((i - grid.left) * BRICK, (j - grid.above) * BRICK);
       for (let k = 0; k < bz; k++) {
-        const top = k * BRICK * pitch;
-        const at = (k * by + j) * bx + i;
-        if (columns.solidBelow < top) break;
-        if (top + BRICK * pitch <= columns.emptyAbove) {
-          table[at] = ALL_EMPTY;
-          continue;
-        }
-        table[at] = store.add((solid, damage, age) => {
-          columns.fill(k * BRICK, pitch, solid, damage, age);
-        });
+        table[(k * by + j) * bx + i] = brickAt(
+          { i, j, k },
+          { pitch, columns: own ? columns : null, earlier, plate, store },
+        );
       }
     }
   }
   return {
-    nx: floor.nx,
-    ny: floor.ny,
-    nz,
+    nx: bx * BRICK,
+    ny: by * BRICK,
+    nz: bz * BRICK,
     pitch,
-    x0: model.x0,
-    y0: model.y0,
+    x0: grid.x0,
+    y0: grid.y0,
     z0: pitch / 2,
+    ...(model.spec.exit && { thickness: model.spec.exit.thickness }),
+    time: whole,
     table,
     count: store.count,
     ...store.finish(),
   };
 }
 
-/** Growing storage of bricks. */
-class BrickStore {
-  count = 0;
-  private solid = new Uint8Array(1024 * BRICK_VOXELS);
-  private damage = new Uint8Array(1024 * BRICK_VOXELS);
-  private age = new Uint8Array(1024 * BRICK_VOXELS);
-
-  /** Fills a new brick; returns its number, or what it is when it turns out uniform and undamaged. */
-  add(fill: (solid: Uint8Array, damage: Uint8Array, age: Uint8Array) => void): number {
-    const from = this.count * BRICK_VOXELS;
-    const to = from + BRICK_VOXELS;
-    if (to > this.solid.length) this.grow();
-    const solid = this.solid.subarray(from, to);
-    const damage = this.damage.subarray(from, to);
-    fill(solid, damage, this.age.subarray(from, to));
-    const first = solid[0] as number;
-    const plain = (first === 0 || first === 255) && solid.every((v) => v === first) && damage.every((v) => v === 0);
-    if (plain) return first === 255 ? ALL_SOLID : ALL_EMPTY;
-    return this.count++;
-  }
-
-  finish(): { solid: Uint8Array; damage: Uint8Array; age: Uint8Array } {
-    const end = this.count * BRICK_VOXELS;
-    return { solid: this.solid.slice(0, end), damage: this.damage.slice(0, end), age: this.age.slice(0, end) };
-  }
-
-  private grow(): void {
-    const larger = (old: Uint8Array<ArrayBuffer>) => {
-      const next = new Uint8Array(old.length * 2);
-      next.set(old);
-      return next;
-    };
-    this.solid = larger(this.solid);
-    this.damage = larger(this.damage);
-    this.age = larger(this.age);
-  }
+/** What a brick is made from. */
+interface Sources {
+  readonly pitch: number;
+  readonly columns: ColumnReader | null;
+  readonly earlier: EarlierReader | null;
+  readonly plate: PlateBottom | null;
+  readonly store: BrickStore;
 }
 
-/** Reads the 8 x 8 columns of one brick column. */
-class ColumnReader {
-  /** Every voxel above this depth is empty, every voxel below that one is solid and sound (m). */
-  emptyAbove = 0;
-  solidBelow = 0;
-  private readonly columns: Column[];
-  private readonly where: Int32Array;
-  private readonly model: CutModel;
-  private readonly state: CutState;
-  private readonly openDepth: number;
-  private readonly agePerSecond: number;
+/** Table entry of brick (i, j, k). */
+function brickAt(at: { i: number; j: number; k: number }, from: Sources): number {
+  const { pitch, columns, earlier, plate, store } = from;
+  const top = at.k * BRICK * pitch;
+  const own = columns ? ownKind(columns, top, pitch) : ALL_SOLID;
+  const its = earlier ? earlier.kindOf(at.i, at.j, at.k) : ALL_SOLID;
+  const air = plate ? plate.kindOf(at.k) : ALL_SOLID;
+  if (own === ALL_EMPTY || its === ALL_EMPTY || air === ALL_EMPTY) return ALL_EMPTY;
+  if (own === ALL_SOLID && its === ALL_SOLID) return air === ALL_SOLID ? ALL_SOLID : (plate as PlateBottom).shared();
+  return store.add((solid, damage, age) => {
+    const into = { solid, damage, age };
+    if (columns && own !== ALL_SOLID) columns.fill(at.k * BRICK, pitch, into);
+    else {
+      solid.fill(255);
+      damage.fill(0);
+      age.fill(0);
+    }
+    if (earlier && its !== ALL_SOLID) earlier.join(at, into);
+    if (plate && air !== ALL_SOLID) plate.clip(into);
+  });
+}
 
-  constructor(model: CutModel, state: CutState) {
-    this.model = model;
-    this.state = state;
-    this.columns = Array.from({ length: BRICK * BRICK }, () => ({
-      surface: 0,
-      crack: 0,
-      age: 0,
-      outside: Number.NaN,
-      wall: null,
-      cell: 0,
-      rimCell: 0,
-    }));
-    this.where = new Int32Array(state.floor.nx * state.floor.ny).fill(-1);
-    state.around.columns.forEach((column, n) => {
-      this.where[column] = n;
-    });
-    const rows = state.scalars[SCALAR.openRows] as number;
-    this.openDepth = rows * (state.walls[0]?.field.dy ?? 0);
-    const time = state.scalars[SCALAR.time] as number;
-    this.agePerSecond = time > 0 ? 254 / time : 0;
+function ownKind(columns: ColumnReader, top: number, pitch: number): number {
+  if (columns.solidBelow < top) return ALL_SOLID;
+  return top + BRICK * pitch <= columns.emptyAbove ? ALL_EMPTY : 0;
+}
+
+const isOn = ({ floor }: CutModel, i: number, j: number) => i * BRICK < floor.nx && j * BRICK < floor.ny;
+
+const axesOf = ({ bx, by, bz, pitch, x0, y0 }: ResultGrid): VoxelGrid => ({
+  x: { n: bx * BRICK, pitch, centre: x0 },
+  y: { n: by * BRICK, pitch, centre: y0 },
+  z: { n: bz * BRICK, pitch, centre: pitch / 2 },
+});
+
+/** The floor's grid, grown by whole bricks where an earlier cavity reaches past it. */
+function resultGrid(model: CutModel, state: CutState): ResultGrid {
+  const { floor } = state;
+  const pitch = floor.dx;
+  let deepest = 0;
+  for (let c = 0; c < floor.heights.length; c++) {
+    const h = floor.heights[c] as number;
+    if (h > OUT_OF_REACH) deepest = Math.max(deepest, -(h + (state.map.rises[c] ?? 0)));
+  }
+  const before = model.spec.before ? voxelAxes(model.spec.before) : null;
+  const x = grown({ n: floor.nx, pitch, centre: model.x0 }, before?.x);
+  const y = grown({ n: floor.ny, pitch, centre: model.y0 }, before?.y);
+  const earlier = before ? before.z.n * before.z.pitch : 0;
+  const depth = model.spec.exit?.thickness ?? Math.max(deepest + BELOW, earlier);
+  const side = BRICK * pitch;
+  return {
+    bx: x.bricks,
+    by: y.bricks,
+    bz: Math.ceil(depth / pitch / BRICK - 1e-9),
+    pitch,
+    x0: model.x0 - x.lead * side,
+    y0: model.y0 - y.lead * side,
+    left: x.lead,
+    above: y.lead,
+  };
+}
+
+/** Bricks along an axis that cover our own cells and an earlier cavity's, and how many of them come before our own. */
+function grown(own: VoxelGrid['x'], before: VoxelGrid['x'] | undefined): { bricks: number; lead: number } {
+  const bricks = own.n / BRICK;
+  if (!before) return { bricks, lead: 0 };
+  const side = BRICK * own.pitch;
+  const low = own.centre - own.pitch / 2;
+  const itsLow = before.centre - before.pitch / 2;
+  const lead = Math.max(0, Math.ceil((low - itsLow) / side - 1e-6));
+  const trail = Math.max(0, Math.ceil((itsLow + before.n * before.pitch - low) / side - bricks - 1e-6));
+  return { bricks: lead + bricks + trail, lead };
+}
+
+/** The layers in which the work ends at its exit face. */
+class PlateBottom {
+  private readonly thickness: number;
+  private readonly pitch: number;
+  private readonly store: BrickStore;
+  private brick = ALL_SOLID;
+
+  constructor(thickness: number, pitch: number, store: BrickStore) {
+    this.thickness = thickness;
+    this.pitch = pitch;
+    this.store = store;
   }
 
-  load(i0: number, j0: number): void {
-    const { floor, around, walls } = this.state;
-    const furthest = this.reach();
-    this.emptyAbove = Number.POSITIVE_INFINITY;
-    this.solidBelow = 0;
-    for (let j = 0; j < BRICK; j++) {
-      for (let i = 0; i < BRICK; i++) {
-        const column = this.columns[j * BRICK + i] as Column;
-        const index = (j0 + j) * floor.nx + i0 + i;
-        column.surface = -(floor.heights[index] as number);
-        column.crack = -(floor.cracks[index] as number);
-        const hit = floor.ages[index] as number;
-        column.age = hit > 0 ? 1 + hit * this.agePerSecond : 0;
-        const n = this.where[index] as number;
-        column.outside = n < 0 ? Number.NaN : (around.outside[n] as number);
-        column.wall = n < 0 ? null : (walls[around.loops[n] as number] ?? null);
-        if (column.wall) {
-          const along = around.along[n] as number;
-          column.cell = Math.min(column.wall.field.nx - 1, Math.floor(along / column.wall.field.dx));
-          column.rimCell = Math.min(column.wall.rim.n - 1, Math.floor(along / column.wall.rim.spacing));
-        }
-        const walled = column.outside < furthest;
-        const bottom = Math.max(column.surface, column.crack, walled ? this.openDepth : 0);
-        this.solidBelow = Math.max(this.solidBelow, bottom);
-        this.emptyAbove = Math.min(this.emptyAbove, column.outside > 0 ? 0 : column.surface);
-      }
+  /** ALL_SOLID above the exit face, ALL_EMPTY below it, 0 for the layer of bricks it passes through. */
+  kindOf(k: number): number {
+    const top = k * BRICK * this.pitch;
+    if (top + BRICK * this.pitch <= this.thickness * (1 + 1e-12)) return ALL_SOLID;
+    return top >= this.thickness ? ALL_EMPTY : 0;
+  }
+
+  /** Takes off what lies below the exit face. */
+  clip({ solid, damage }: { solid: Uint8Array; damage: Uint8Array }): void {
+    const inside = this.thickness / this.pitch;
+    const first = Math.floor(inside / BRICK) * BRICK;
+    for (let n = 0; n < BRICK_VOXELS; n++) {
+      const share = Math.max(0, Math.min(1, inside - (first + (n >> 6))));
+      solid[n] = Math.round((solid[n] as number) * share);
+      if (solid[n] === 0) damage[n] = 0;
     }
   }
 
-  /** How far outside the tool the wall, its cracks and the rim's chips can lie (m). */
-  private reach(): number {
-    const { grit, constants } = this.model.spec.conditions;
-    return 2 * grit.largest + constants.chipWidthRatio * this.model.deepestEdgeChip;
-  }
-
-  fill(k0: number, pitch: number, solid: Uint8Array, damage: Uint8Array, age: Uint8Array): void {
-    for (let n = 0; n < BRICK * BRICK; n++) {
-      const column = this.columns[n] as Column;
-      for (let k = 0; k < BRICK; k++) {
-        const at = k * BRICK * BRICK + n;
-        const top = (k0 + k) * pitch;
-        let removed = clamp01((column.surface - top) / pitch);
-        let hurt = depthDamage(column, top + pitch / 2);
-        let when = column.age;
-        if (column.wall) {
-          const side = this.wallAt(column, top + pitch / 2, pitch);
-          const chip = this.chipAt(column, top, pitch);
-          // outside the tool, rows the tool has passed are the wall's: a lone floor column left deep there is no slit
-          if (side !== NO_WALL && column.outside > 0) removed = 0;
-          if (side.removed >= removed) when = side.age;
-          removed = Math.max(removed, side.removed, chip);
-          hurt = Math.max(hurt, side.damage);
-        }
-        const share = Math.round(255 * (1 - removed));
-        solid[at] = share;
-        damage[at] = share > 0 ? Math.round(255 * hurt) : 0;
-        age[at] = Math.min(255, Math.round(when));
-      }
+  /** The one brick that stands for all where nothing else is going on. */
+  shared(): number {
+    if (this.brick === ALL_SOLID) {
+      this.brick = this.store.add((solid, damage, age) => {
+        solid.fill(255);
+        damage.fill(0);
+        age.fill(0);
+        this.clip({ solid, damage });
+      });
     }
-  }
-
-  private wallAt(column: Column, z: number, pitch: number): { removed: number; damage: number; age: number } {
-    const { field } = column.wall as WallState;
-    const row = Math.floor(z / field.dy);
-    if (row >= field.ny) return NO_WALL;
-    const index = row * field.nx + column.cell;
-    const h = field.heights[index] as number;
-    if (h <= OUT_OF_REACH) return NO_WALL;
-    const beyond = column.outside + h;
-    const cracked = h - (field.cracks[index] as number);
-    const hurt = cracked > 0 && beyond > 0 ? Math.max(0, 1 - beyond / cracked) : 0;
-    const hit = field.ages[index] as number;
-    return { removed: clamp01(0.5 - beyond / pitch), damage: hurt, age: hit > 0 ? 1 + hit * this.agePerSecond : 0 };
-  }
-
-  private chipAt(column: Column, top: number, pitch: number): number {
-    const { rim, field } = column.wall as WallState;
-    const deep = rim.chips[column.rimCell] as number;
-    if (!(deep > top)) return 0;
-    const first = field.heights[column.cell] as number;
-    if (first <= OUT_OF_REACH) return 0;
-    const width = this.model.spec.conditions.constants.chipWidthRatio * deep;
-    const beyond = Math.max(0, column.outside + first);
-    if (beyond >= width) return 0;
-    const depth = deep * Math.sqrt(1 - (beyond / width) ** 2);
-    return clamp01((depth - top) / pitch);
+    return this.brick;
   }
 }
 
-const NO_WALL = { removed: 0, damage: 0, age: 0 };
-
-const clamp01 = (value: number) => Math.max(0, Math.min(1, value));
-
-function depthDamage(column: Column, z: number): number {
-  const length = column.crack - column.surface;
-  if (!(length > 0) || z < column.surface || z > column.crack) return 0;
-  return 1 - (z - column.surface) / length;
-}
-
-/** Volume the cut has taken, from the voxels (m3). */
+/** Volume the cuts have taken, from the voxels (m3): what is empty, less the air below an exit face. */
 export function removedVolume(bricks: BrickField): number {
+  const { nx, ny, nz, pitch, table, count, thickness } = bricks;
+  const ofBrick = new Float64Array(count);
+  bricks.solid.forEach((solid, n) => {
+    const brick = Math.floor(n / BRICK_VOXELS);
+    ofBrick[brick] = (ofBrick[brick] as number) + 255 - solid;
+  });
   let empty = 0;
-  for (const entry of bricks.table) if (entry === ALL_EMPTY) empty += BRICK_VOXELS * 255;
-  for (const solid of bricks.solid) empty += 255 - solid;
-  return (empty / 255) * bricks.pitch ** 3;
+  for (const entry of table) {
+    if (entry === ALL_EMPTY) empty += BRICK_VOXELS * 255;
+    else if (entry >= 0) empty += ofBrick[entry] as number;
+  }
+  // the layer the exit face passes through is stored in 255 parts like any other
+  const inside = (thickness ?? 0) / pitch;
+  const filled = Math.floor(inside) + Math.round(255 * (inside - Math.floor(inside))) / 255;
+  const air = thickness === undefined ? 0 : nx * ny * (nz - filled);
+  return (empty / 255 - air) * pitch ** 3;
 }

@@ -1,76 +1,18 @@
 import { exp, normalQuantile } from '#src/base/math.ts';
-import { nearest } from '#src/base/outline.ts';
 import { philox, streamKey } from '#src/base/philox.ts';
 import { emptyCounts, type HeightCounts } from './balance.ts';
+import { fitMeans, flatArea } from './edge.ts';
 import { type Allocate, allocatePlain, fieldFrom, makeField, makeRim, rimFrom } from './field.ts';
 import { type Field, OUT_OF_REACH, type Rim, STEPS } from './kernels/contract.ts';
 import { type CutModel, EDGE_ZONES } from './model.ts';
+import { SCALAR, SCALARS } from './scalars.ts';
 import { makeZoneTables, type ZoneTables } from './slurry.ts';
+import { boundBlocks, depthsBefore, highestReach } from './start.ts';
+import { type FloorMap, mapFloor, markUnscaled, type Surroundings } from './surroundings.ts';
 import { type GapMeans, makeMeans } from './tables.ts';
 
-/** Indices of the numbers of a cut that change, one float64 each, saved and restored with the fields. */
-export const SCALAR = {
-  step: 0,
-  /** Process time (s). */
-  time: 1,
-  /** Height of the tool face at the end of the last step (m). */
-  face: 2,
-  efold: 3,
-  /** Mean height of the flat floor (m). */
-  floorMean: 4,
-  /** Smoothed lowering of the floor per cycle (m). */
-  ratePerCycle: 5,
-  stripFace: 6,
-  stripMean: 7,
-  stripEfold: 8,
-  /** Load per area on the flat floor (Pa). */
-  facePressure: 9,
-  /** Cycles since the last free-impact lowering and since the last wall step. */
-  cyclesSinceRenew: 10,
-  cyclesSinceWall: 11,
-  /** Rows of the walls open to hits. */
-  openRows: 12,
-  /** Length the tool has lost (m). */
-  toolLost: 13,
-  /** Sums over the cut: floor hits, chips, volumes (m3), impulse (N s) and the load they add up to. */
-  candidates: 14,
-  engaged: 15,
-  chips: 16,
-  credited: 17,
-  overlap: 18,
-  chipRemoved: 19,
-  dentRemoved: 20,
-  freeRemoved: 21,
-  impulse: 22,
-  load: 23,
-  largestLoad: 24,
-  chipRadius: 25,
-  chipDepth: 26,
-  /** Sums since the last record. */
-  recentImpulse: 27,
-  recentTime: 28,
-  recentEngaged: 29,
-  recentLoad: 30,
-  recentLargestLoad: 31,
-  nextRecordDepth: 32,
-  wallHits: 33,
-  wallRemoved: 34,
-  cycles: 35,
-  setLoad: 36,
-  /** Tool dents per cycle at the last balance, per grain and square metre of film (m3). */
-  toolDents: 37,
-  /** Floor hits, each counting its magnification; over the cut and since the last record. */
-  impacts: 38,
-  recentImpacts: 39,
-  /** Depth at which the slurry is worked out next (m), and what it came to last. */
-  nextSlurryDepth: 40,
-  stall: 41,
-  freshShare: 42,
-  smoothLowered: 43,
-  smoothCycles: 44,
-  lastCycles: 45,
-} as const;
-export const SCALARS = 46;
+export { ENDED, SCALAR, SCALARS } from './scalars.ts';
+export type { Surroundings } from './surroundings.ts';
 
 /** One wall: its field, its rim, and where floor columns map along it. */
 export interface WallState {
@@ -79,6 +21,8 @@ export interface WallState {
   readonly rimBuffer: ArrayBufferLike;
   readonly rim: Rim;
   readonly step: Float64Array;
+  /** Rows that have been opened, cell by cell of arc length. */
+  readonly opened: Int32Array;
 }
 
 /** Everything that changes while a cut runs, in flat typed arrays. */
@@ -91,23 +35,18 @@ export interface CutState {
   readonly strip: Field | null;
   readonly stripStep: Float64Array;
   readonly walls: readonly WallState[];
-  /** Means by gap that the load balance reads; fresh, or renewed with the slurry. */
-  readonly means: GapMeans;
-  readonly zones: ZoneTables | null;
-  readonly counts: HeightCounts;
-  readonly stripCounts: HeightCounts;
+  /** Means by gap that the load balance reads: fresh, or renewed with the slurry and the tool's edge. */
+  means: GapMeans;
+  readonly zones: ZoneTables;
+  counts: HeightCounts;
+  stripCounts: HeightCounts;
+  readonly map: FloorMap;
   /** Columns outside the tool: index, distance outside the outline (m), wall loop and arc length there (m). */
   readonly around: Surroundings;
-  /** Area under the flat face (m2), counted in columns. */
-  readonly faceArea: number;
-}
-
-/** Floor columns beyond the start of the tool's curved edge. */
-export interface Surroundings {
-  readonly columns: Int32Array;
-  readonly outside: Float32Array;
-  readonly loops: Uint8Array;
-  readonly along: Float32Array;
+  /** Area under the flat face (m2), counted in columns; less when the edge has worn. */
+  faceArea: number;
+  /** Room for the numbers of the blocks near a face in partial contact. */
+  readonly blocks: Int32Array;
 }
 
 const stepRow = (allocate: Allocate) => new Float64Array(allocate(STEPS * 8), 0, STEPS);
@@ -116,106 +55,113 @@ const stepRow = (allocate: Allocate) => new Float64Array(allocate(STEPS * 8), 0,
 const FEWEST_FACE_COLUMNS = 50;
 
 /**
- * A fresh cut: untouched work, the tool just above it.
- * @throws RangeError when the tool has next to no flat face
+ * A fresh cut: the work as the passes before have left it, the tool in first contact.
+ * @throws RangeError when the tool has next to no face within its curved edge
  */
 export function makeState(model: CutModel, allocate: Allocate = allocatePlain): CutState {
   const floorBuffer = makeField(model.floor, 0, allocate);
   const floor = fieldFrom(floorBuffer);
-  const stripBuffer = model.strip ? makeField(model.strip, 0, allocate) : null;
-  const { around, faceColumns } = mapSurroundings(model, floor);
-  if (faceColumns < FEWEST_FACE_COLUMNS) {
+  const map = mapFloor(model, floor);
+  if (map.faceColumns < FEWEST_FACE_COLUMNS) {
     throw new RangeError(
       'the tool has next to no flat face: its curved edge takes it all, or the voxel is too coarse for it',
     );
   }
-  markUnscaled(model, floor);
-  const walls = model.walls.map((wall, k): WallState => {
-    const buffer = makeField(wall.spec, OUT_OF_REACH, allocate);
-    const rimBuffer = makeRim(wall.rimCells, wall.rimSpacing, wall.cellsPerSite, allocate);
-    const rim = rimFrom(rimBuffer);
-    scatterSites(model, rim, k);
-    return { buffer, field: fieldFrom(buffer), rimBuffer, rim, step: stepRow(allocate) };
-  });
+  markUnscaled(model, floor, model.spec.edgeRadius);
+  const flat = model.slurry?.face.shape.zones ?? 1;
+  const zones = makeZoneTables(model.tables.kernel, flat, allocate);
+  const means = model.slurry ? makeMeans(model.tables, flat, EDGE_ZONES) : model.means;
+  const strip = makeStrip(model, allocate);
+  const state: CutState = {
+    scalars: startScalars(model),
+    means,
+    zones,
+    floorBuffer,
+    floor,
+    floorStep: stepRow(allocate),
+    stripBuffer: strip?.buffer ?? null,
+    strip: strip?.field ?? null,
+    stripStep: stepRow(allocate),
+    walls: model.walls.map((_, k) => makeWall(model, k, allocate)),
+    counts: emptyCounts(means),
+    stripCounts: emptyCounts(means),
+    map,
+    around: map.around,
+    faceArea: flatArea(floor),
+    blocks: new Int32Array(model.partial ? floor.bounds.length : 0),
+  };
+  if (model.partial) standOnSurface(model, state);
+  return state;
+}
+
+function startScalars(model: CutModel): Float64Array {
+  const { drive, edgeRadius, conditions } = model.spec;
   const scalars = new Float64Array(SCALARS);
   scalars[SCALAR.freshShare] = 1;
   scalars[SCALAR.lastCycles] = 1;
   scalars[SCALAR.face] = model.startGap;
+  scalars[SCALAR.balancedFace] = model.startGap;
   scalars[SCALAR.efold] = model.startEfold;
   scalars[SCALAR.stripFace] = model.startGap;
   scalars[SCALAR.stripEfold] = model.startEfold;
-  const { drive } = model.spec;
   scalars[SCALAR.facePressure] = drive.kind === 'load' ? drive.load / model.outline.area : 0;
-  const flat = model.slurry?.setting.shape.zones ?? 1;
-  const means = model.slurry ? makeMeans(model.tables, flat, EDGE_ZONES) : model.means;
-  return {
-    scalars,
-    means,
-    zones: model.slurry ? makeZoneTables(model.tables.kernel, flat, allocate) : null,
-    floorBuffer,
-    floor,
-    floorStep: stepRow(allocate),
-    stripBuffer,
-    strip: stripBuffer ? fieldFrom(stripBuffer) : null,
-    stripStep: stepRow(allocate),
-    walls,
-    counts: emptyCounts(means),
-    stripCounts: emptyCounts(means),
-    around,
-    faceArea: faceColumns * floor.dx * floor.dy,
-  };
+  scalars[SCALAR.contactArea] = model.outline.area;
+  scalars[SCALAR.edgeRadius] = edgeRadius;
+  scalars[SCALAR.wallFresh] = conditions.constants.wallRenewal;
+  return scalars;
 }
 
-/** Each column's distance beyond the start of the curved edge, and the list of columns that have one. */
-function mapSurroundings(model: CutModel, floor: Field): { around: Surroundings; faceColumns: number } {
-  const { outline, spec, x0, y0 } = model;
-  const columns: number[] = [];
-  const outside: number[] = [];
-  const loops: number[] = [];
-  const along: number[] = [];
-  let faceColumns = 0;
-  for (let j = 0; j < floor.ny; j++) {
-    for (let i = 0; i < floor.nx; i++) {
-      const near = nearest(outline, x0 + i * floor.dx, y0 + j * floor.dy);
-      const beyond = near.distance + spec.edgeRadius;
-      if (beyond <= 0) {
-        faceColumns++;
-        continue;
-      }
-      const column = j * floor.nx + i;
-      floor.edges[column] = beyond;
-      columns.push(column);
-      outside.push(near.distance);
-      loops.push(near.loop);
-      along.push(near.s - (outline.loops[near.loop]?.start ?? 0));
-    }
+function makeWall(model: CutModel, k: number, allocate: Allocate): WallState {
+  const wall = model.walls[k] as CutModel['walls'][number];
+  const buffer = makeField(wall.spec, OUT_OF_REACH, allocate);
+  const rimBuffer = makeRim(wall.rimCells, wall.rimSpacing, wall.cellsPerSite, allocate);
+  const rim = rimFrom(rimBuffer);
+  scatterSites(model, rim, k);
+  const opened = new Int32Array(wall.spec.nx);
+  return { buffer, field: fieldFrom(buffer), rimBuffer, rim, step: stepRow(allocate), opened };
+}
+
+/** The trace strip, with the roughness the pass before has left where there is one. */
+function makeStrip(model: CutModel, allocate: Allocate): { buffer: ArrayBufferLike; field: Field } | null {
+  if (!model.strip) return null;
+  const buffer = makeField(model.strip, 0, allocate);
+  const field = fieldFrom(buffer);
+  const earlier = model.spec.stripBefore;
+  if (!earlier) return { buffer, field };
+  let mean = 0;
+  for (const h of earlier.heights) mean += h / earlier.heights.length;
+  for (let c = 0; c < field.heights.length; c++) {
+    const i = Math.round(((c % field.nx) * field.dx) / earlier.dx) % earlier.nx;
+    const j = Math.round((Math.floor(c / field.nx) * field.dy) / earlier.dy) % earlier.ny;
+    field.heights[c] = (earlier.heights[j * earlier.nx + i] as number) - mean;
   }
-  const around = {
-    columns: Int32Array.from(columns),
-    outside: Float32Array.from(outside),
-    loops: Uint8Array.from(loops),
-    along: Float32Array.from(along),
-  };
-  return { around, faceColumns };
+  field.cracks.set(field.heights);
+  boundBlocks(field, model.tables.kernel);
+  return { buffer, field };
 }
 
 /**
- * Marks the blocks within reach of the tool's edge, and so near it that a magnified crater would spill over it: there the
- * fillet, the foot and the overcut have lengths of their own, and hits are drawn one by one.
+ * Lays the surface the cut starts on into the floor, less the face's rise, and lowers the tool until its first grains touch
+ * it.
  */
-function markUnscaled(model: CutModel, floor: Field): void {
-  if (model.magnification === 1) return;
-  const reach = model.largestChip * Math.sqrt(model.magnification);
-  const per = floor.tile / floor.block;
-  const half = (floor.block / 2) * floor.dx;
-  for (let k = 0; k < floor.unscaled.length; k++) {
-    const tile = Math.floor(k / (per * per));
-    const inside = k % (per * per);
-    const i = (tile % floor.tilesX) * floor.tile + ((inside % per) + 0.5) * floor.block;
-    const j = Math.floor(tile / floor.tilesX) * floor.tile + (Math.floor(inside / per) + 0.5) * floor.block;
-    const { distance } = nearest(model.outline, model.x0 + (i - 0.5) * floor.dx, model.y0 + (j - 0.5) * floor.dy);
-    floor.unscaled[k] = distance + half * Math.SQRT2 > -(model.spec.edgeRadius + reach) ? 1 : 0;
+function standOnSurface(model: CutModel, state: CutState): void {
+  const { floor, map, scalars } = state;
+  const before = model.spec.before ? depthsBefore(model, model.spec.before) : null;
+  for (let c = 0; c < floor.heights.length; c++) {
+    const depth = before ? (before[c] as number) : 0;
+    floor.heights[c] = depth === Number.POSITIVE_INFINITY ? OUT_OF_REACH : -depth - (map.rises[c] ?? 0);
   }
+  floor.cracks.set(floor.heights);
+  if (before) map.starts.set(floor.heights);
+  boundBlocks(floor, model.tables.kernel);
+  const top = Math.min(0, highestReach(floor));
+  scalars[SCALAR.floorMean] = top;
+  scalars[SCALAR.startDepth] = -top;
+  scalars[SCALAR.nextRecordDepth] = -top;
+  scalars[SCALAR.nextSlurryDepth] = -top;
+  scalars[SCALAR.face] = top + model.startGap;
+  scalars[SCALAR.balancedFace] = top + model.startGap;
+  scalars[SCALAR.contactArea] = 0;
 }
 
 /** Site-by-site log-normal scatter of the load that chips the rim. */
@@ -236,8 +182,9 @@ export function saveState(state: CutState): ArrayBuffer[] {
     copy(state.scalars.buffer),
     copy(state.floorBuffer),
     ...(state.stripBuffer ? [copy(state.stripBuffer)] : []),
-    ...state.walls.flatMap((wall) => [copy(wall.buffer), copy(wall.rimBuffer)]),
-    ...(state.zones ? [copy(state.zones.buffer), copy(state.means.buffer)] : []),
+    ...state.walls.flatMap((wall) => [copy(wall.buffer), copy(wall.rimBuffer), copy(wall.opened.buffer)]),
+    copy(state.zones.buffer),
+    copy(state.means.buffer),
   ];
 }
 
@@ -246,16 +193,22 @@ export function saveState(state: CutState): ArrayBuffer[] {
  * @throws RangeError when the copy is not of a state of this model.
  */
 export function restoreState(state: CutState, saved: readonly ArrayBuffer[]): void {
+  const misfit = () => new RangeError('the saved state belongs to another job');
+  const first = saved[0];
+  if (first?.byteLength !== state.scalars.byteLength) throw misfit();
+  fitMeans(state, new Float64Array(first)[SCALAR.edgeRadius] as number);
   const targets = [
     state.scalars.buffer,
     state.floorBuffer,
     ...(state.stripBuffer ? [state.stripBuffer] : []),
-    ...state.walls.flatMap((wall) => [wall.buffer, wall.rimBuffer]),
-    ...(state.zones ? [state.zones.buffer, state.means.buffer] : []),
+    ...state.walls.flatMap((wall) => [wall.buffer, wall.rimBuffer, wall.opened.buffer]),
+    state.zones.buffer,
+    state.means.buffer,
   ];
   const fits = saved.length === targets.length && targets.every((t, k) => t.byteLength === saved[k]?.byteLength);
-  if (!fits) throw new RangeError('the saved state belongs to another job');
+  if (!fits) throw misfit();
   targets.forEach((target, k) => {
     new Uint8Array(target).set(new Uint8Array(saved[k] as ArrayBuffer));
   });
+  state.faceArea = flatArea(state.floor);
 }

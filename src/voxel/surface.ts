@@ -1,6 +1,5 @@
 import type { HeightField, PlaneCurve } from '#src/base/field.ts';
 import { ALL_EMPTY, ALL_SOLID, BRICK, BRICK_VOXELS, type BrickField, solidAt } from './bricks.ts';
-import type { CutState } from './state.ts';
 
 /** Half of a full voxel: the surface runs where the solid fraction passes it. */
 const HALF = 127.5;
@@ -133,24 +132,4 @@ export function sectionAt(bricks: BrickField, y: number): SectionCurves {
     }
   }
   return { x, surface, z, left, right };
-}
-
-/** The rim unrolled: arc length, chip depth down the wall and chip width on the entry face (m), all loops in turn. */
-export function rimProfile(
-  state: CutState,
-  widthRatio: number,
-): { arc: Float64Array; depth: Float64Array; width: Float64Array } {
-  const total = state.walls.reduce((sum, wall) => sum + wall.rim.n, 0);
-  const arc = new Float64Array(total);
-  const depth = new Float64Array(total);
-  let n = 0;
-  let start = 0;
-  for (const { rim } of state.walls) {
-    for (let k = 0; k < rim.n; k++, n++) {
-      arc[n] = start + (k + 0.5) * rim.spacing;
-      depth[n] = rim.chips[k] as number;
-    }
-    start += rim.n * rim.spacing;
-  }
-  return { arc, depth, width: depth.map((deep) => deep * widthRatio) };
 }

@@ -50,6 +50,7 @@ export function buildTables(conditions: Conditions, setting: TableSetting): CutT
   coefficients[COEFFICIENT.chipLoad] = constants.edgeChip * work.toughness;
   coefficients[COEFFICIENT.chipBreadth] = constants.chipBreadthRatio;
   coefficients[COEFFICIENT.useful] = 1;
+  coefficients[COEFFICIENT.dentEvery] = 1;
   coefficients[COEFFICIENT.runout] = setting.runout;
   coefficients[COEFFICIENT.runoutLargest] = setting.runout * constants.runoutCap;
 
@@ -118,6 +119,8 @@ function hitTables(conditions: Conditions, crack: number): { hits: Float32Array;
 
 /** Means over the size law of what one grain does, by gap and zone: flat zones first, then the curved edge's. */
 export interface GapMeans {
+  /** The largest grain (m). */
+  readonly largest: number;
   /** Gap between neighbouring entries (m); entry k is the gap k step, less `lift` under the curved edge. */
   readonly step: number;
   readonly entries: number;
@@ -146,8 +149,21 @@ export interface ZoneGrit {
 /** Empty means for so many flat zones and zones of the edge. */
 export function makeMeans(tables: CutTables, flat: number, edges: number): GapMeans {
   const { coefficients } = tables.kernel;
-  const largest = coefficients[COEFFICIENT.largest] as number;
-  const lift = coefficients[COEFFICIENT.edgeRadius] as number;
+  return emptyMeans({
+    largest: coefficients[COEFFICIENT.largest] as number,
+    lift: coefficients[COEFFICIENT.edgeRadius] as number,
+    flat,
+    edges,
+  });
+}
+
+/** Empty means like others, for an edge of another radius (m). */
+export function meansFor({ largest, flat, zones }: GapMeans, edgeRadius: number): GapMeans {
+  return emptyMeans({ largest, lift: edgeRadius, flat, edges: zones.length - flat });
+}
+
+function emptyMeans(of: { largest: number; lift: number; flat: number; edges: number }): GapMeans {
+  const { largest, lift, flat, edges } = of;
   const reach = largest / 2 + lift;
   const step = largest / GAP_STEPS;
   const entries = GAP_STEPS + 1 + Math.ceil(lift / step);
@@ -158,6 +174,7 @@ export function makeMeans(tables: CutTables, flat: number, edges: number): GapMe
   const buffer = new ArrayBuffer(3 * 8 * size);
   return {
     buffer,
+    largest,
     step,
     entries,
     lift,
@@ -176,9 +193,7 @@ export function fillMeans(
   tables: CutTables,
   grits: readonly ZoneGrit[],
 ): void {
-  const { impulse, toolDent, engaged, zones, flat, entries } = means;
-  const { coefficients } = tables.kernel;
-  const edgeRadius = coefficients[COEFFICIENT.edgeRadius] as number;
+  const { impulse, toolDent, engaged, zones, flat, entries, lift: edgeRadius } = means;
   const { diameter } = sizeClasses(conditions.grit);
   impulse.fill(0);
   toolDent.fill(0);

@@ -181,6 +181,19 @@ export function kernelSpec(create: () => Kernel, precision: 32 | 64): void {
       }
     });
 
+    test('thrown grains lower the floor evenly down to two of the largest grains below the face, and no further', () => {
+      const field = testFloor(precision, (i) => (i < 64 ? -1.9 : -2.1) * largest);
+      const step = testStep(0, 0);
+      step[STEP.even] = 1e-8;
+      const start = field.heights.slice();
+      hitAll(field, step);
+      for (const i of [3, 60, 70, 120]) {
+        const lowered = (start[i] as number) - (field.heights[i] as number);
+        // heights of 1e-4 m in single precision are 7e-12 m apart
+        expect(Math.abs(lowered - (i < 64 ? 1e-8 : 0))).toBeLessThan(1e-11);
+      }
+    });
+
     test('columns out of reach are neither hit nor lowered, and columns under the curved edge are hit less', () => {
       const field = testFloor(precision, () => 0, true);
       const beyond = (i: number) => Math.max(0, (i - 64) * 1.5e-6);

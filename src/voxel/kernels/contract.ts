@@ -96,7 +96,7 @@ export const STEP = {
   key1: 6,
   /** 1 when block bounds are to be renewed before the hits. */
   renew: 7,
-  /** Even lowering by free impacts, applied when bounds are renewed (m). */
+  /** Even lowering by free impacts, applied when bounds are renewed, down to FREE_REACH below the face (m). */
   even: 8,
   /** Rows of the field that are open to hits (wall), or ny. */
   rows: 9,
@@ -104,6 +104,9 @@ export const STEP = {
   active: 10,
 } as const;
 export const STEPS = 11;
+
+/** Depth below the face, in largest grains, to which thrown grains lower the floor. */
+export const FREE_REACH = 2;
 
 /** Where candidates and candidates' second draws sit in the generator's counter. */
 export const USE_HIT = 0;
@@ -126,8 +129,13 @@ export const COEFFICIENT = {
   runoutLargest: 8,
   /** Share of the hits that debris does not shield: scales what leaves, not the load. */
   useful: 9,
+  /** One hit in so many (1 or 4) takes a dent, of so many times the volume: dents that remove little are thinned. */
+  dentEvery: 10,
 } as const;
-export const COEFFICIENTS = 10;
+export const COEFFICIENTS = 11;
+
+/** Six bits of a hit's mark thin the dents. */
+export const DENT_MARKS = 64;
 
 /** Channels of the hit table. */
 export const HIT = { load: 0, impulse: 1, dent: 2, crack: 3 } as const;

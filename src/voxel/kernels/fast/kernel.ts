@@ -1,7 +1,9 @@
 import { philox } from '../../../base/philox.ts';
 import {
   COEFFICIENT,
+  DENT_MARKS,
   type Field,
+  FREE_REACH,
   GRAIN_BINS_PER_OCTAVE,
   GRAIN_OCTAVES,
   HIT_CHANNELS,
@@ -81,6 +83,7 @@ export function createFastKernel(): Kernel {
     const even = step[STEP.even] as number;
     const edgeRadius = tables.coefficients[COEFFICIENT.edgeRadius] as number;
     const most = (tables.coefficients[COEFFICIENT.largest] as number) / 2 + edgeRadius;
+    const lowest = face - FREE_REACH * (tables.coefficients[COEFFICIENT.largest] as number);
     const edged = edges.length > 0;
     const row0 = ((tile / field.tilesX) | 0) * side;
     const col0 = (tile % field.tilesX) * side;
@@ -98,7 +101,7 @@ export function createFastKernel(): Kernel {
             const e = edged ? (edges[column] as number) : 0;
             if (e >= most || h >= face + riseAt(edgeRadius, e)) continue;
             let reached = h;
-            if (even > 0) {
+            if (even > 0 && h > lowest) {
               heights[column] = h - even;
               reached = heights[column] as number;
               taken += h - reached;
@@ -139,6 +142,8 @@ export function createFastKernel(): Kernel {
     const radiusFactor = coefficients[COEFFICIENT.radius] as number;
     const depthFactor = coefficients[COEFFICIENT.depth] as number;
     const dentFactor = coefficients[COEFFICIENT.dentRadius] as number;
+    const dentEvery = coefficients[COEFFICIENT.dentEvery] as number;
+    const dentMarks = DENT_MARKS / dentEvery;
     const useful = coefficients[COEFFICIENT.useful] as number;
     const edged = edges.length > 0;
     // columns the tool has passed at its full width are wall
@@ -222,9 +227,11 @@ export function createFastKernel(): Kernel {
           depthSum += at.depth;
           stampChip(field, at, scale, base);
         }
-        at.radius = dentFactor * root;
-        at.limit = top;
-        stampDent(field, at, (hit[2] as number) * local * useful, scale, base);
+        if (((mark >>> 16) & (DENT_MARKS - 1)) < dentMarks) {
+          at.radius = dentFactor * root;
+          at.limit = top;
+          stampDent(field, at, (hit[2] as number) * local * useful * dentEvery, scale, base);
+        }
         if (e === 0) {
           faceRemoved += (sums[base + SUM.chipRemoved] as number) + (sums[base + SUM.dentRemoved] as number) - before;
         }
@@ -284,6 +291,8 @@ export function createFastKernel(): Kernel {
     const radiusFactor = coefficients[COEFFICIENT.radius] as number;
     const depthFactor = coefficients[COEFFICIENT.depth] as number;
     const dentFactor = coefficients[COEFFICIENT.dentRadius] as number;
+    const dentEvery = coefficients[COEFFICIENT.dentEvery] as number;
+    const dentMarks = DENT_MARKS / dentEvery;
     const per = side / block;
     const blocks = per * per;
     const col0 = (tile % field.tilesX) * side;
@@ -342,9 +351,11 @@ export function createFastKernel(): Kernel {
           chips++;
           stampChip(field, at, scale, base);
         }
-        at.radius = dentFactor * root;
-        at.limit = 0;
-        stampDent(field, at, (hit[2] as number) * m, scale, base);
+        if (((mark >>> 16) & (DENT_MARKS - 1)) < dentMarks) {
+          at.radius = dentFactor * root;
+          at.limit = 0;
+          stampDent(field, at, (hit[2] as number) * m * dentEvery, scale, base);
+        }
         chipRim(rim, tables, x * field.dx, y * field.dy, load);
       }
       left -= rest;

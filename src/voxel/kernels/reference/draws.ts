@@ -2,6 +2,7 @@ import { log } from '../../../base/math.ts';
 import { philox } from '../../../base/philox.ts';
 import {
   COEFFICIENT,
+  DENT_MARKS,
   GRAIN_BINS_PER_OCTAVE,
   GRAIN_OCTAVES,
   type KernelTables,
@@ -23,6 +24,8 @@ export interface Draw {
   readonly threshold: number;
   /** Detachment mark, 0..1. */
   readonly detachment: number;
+  /** Mark that thins the dents, 0..63. */
+  readonly dent: number;
   /** Share of the block's own tail at which the grain lies. */
   readonly size: number;
 }
@@ -44,6 +47,7 @@ export function drawOf(step: Float64Array, tile: number, event: number): Draw {
     across: ((r1 >>> 16) + 0.5) / 65536,
     along: ((r1 & 0xffff) + 0.5) / 65536,
     threshold: r2 >>> 22,
+    dent: (r2 >>> 16) % DENT_MARKS,
     detachment: (r2 & 0xffff) / 65536,
     size: (r3 + 0.5) / TWO_TO_32,
   };

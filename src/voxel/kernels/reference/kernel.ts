@@ -1,6 +1,8 @@
 import {
   COEFFICIENT,
+  DENT_MARKS,
   type Field,
+  FREE_REACH,
   HIT,
   HIT_CHANNELS,
   type Kernel,
@@ -94,7 +96,7 @@ function renewTile(field: Field, tables: KernelTables, step: Float64Array, tile:
       const reach = reachOf(tables, largest, beyond);
       const passed = before >= face + riseOf(tables, beyond);
       if (passed || before <= OUT_OF_REACH || reach === Number.NEGATIVE_INFINITY) continue;
-      field.heights[column] = before - even;
+      if (before > face - FREE_REACH * largest) field.heights[column] = before - even;
       const after = at(field.heights, column);
       addTo(field, tile, SUM.freeRemoved, (before - after) * field.dx * field.dy);
       bound = Math.max(bound, after - (largest - reach));
@@ -214,9 +216,10 @@ function strike(
     addTo(field, tile, SUM.depth, depth);
     taken += takeChip(field, crater(radius, depth, Math.min(ceiling, from + radius)), tile, time);
   }
+  const every = at(tables.coefficients, COEFFICIENT.dentEvery);
+  if (draw.dent >= DENT_MARKS / every) return taken;
   const dentRadius = at(tables.coefficients, COEFFICIENT.dentRadius) * root;
-  taken += takeDent(field, crater(dentRadius, 0, ceiling), hit.dent * m * useful, tile);
-  return taken;
+  return taken + takeDent(field, crater(dentRadius, 0, ceiling), hit.dent * m * useful * every, tile);
 }
 
 /** Bin of a load in the histogram: eight equal steps within each octave of float32. */
