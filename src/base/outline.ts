@@ -140,9 +140,26 @@ function exactBounds(loops: readonly { readonly segments: readonly Segment[] }[]
  * @throws RangeError for a path without loops.
  */
 export function makeOutline(spec: OutlineSpec): Outline {
+  return outlineOf(spec, segmentsOf(spec));
+}
+
+/** A round hole through a tool: centre and radius (m), in the outline's frame. */
+export interface RoundHole {
+  readonly x: number;
+  readonly y: number;
+  readonly radius: number;
+}
+
+/** An outline with round holes in it, which come after its own loops; they must lie inside it and apart. */
+export function makeBoredOutline(spec: OutlineSpec, holes: readonly RoundHole[]): Outline {
+  const bored = holes.map(({ x, y, radius }) => ({ segments: [arc(x, y, radius, 0, -2 * PI)], hole: true }));
+  return outlineOf(spec, [...segmentsOf(spec), ...bored]);
+}
+
+function outlineOf(spec: OutlineSpec, parts: readonly { segments: Segment[]; hole: boolean }[]): Outline {
   let running = 0;
   let area = 0;
-  const loops = segmentsOf(spec).map(({ segments, hole }): Loop => {
+  const loops = parts.map(({ segments, hole }): Loop => {
     const start = running;
     const length = segments.reduce((sum, segment) => sum + segment.length, 0);
     area += segments.reduce((sum, segment) => sum + doubleArea(segment), 0) / 2;

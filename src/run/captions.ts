@@ -70,7 +70,8 @@ export function captionOf(job: ResolvedJob, passes: readonly ResolvedPass[], { m
 /** The drawing's limits as the section writes them; deviations where it has several sizes. */
 export function limitTexts(limits: Limits, nominal: readonly number[]): SectionLimits {
   const mm = (metres: number) => (metres / METRES_PER_MILLIMETRE).toFixed(3);
-  const signed = (metres: number) => `${metres < 0 ? '\u2212' : '+'}${formatNumber(Math.abs(metres) / METRES_PER_MILLIMETRE, 3)}`;
+  const signed = (metres: number) =>
+    `${metres < 0 ? '\u2212' : '+'}${formatNumber(Math.abs(metres) / METRES_PER_MILLIMETRE, 3)}`;
   const [size = 0, ...more] = nominal;
   const bound = (metres: number) => (more.length > 0 ? signed(metres) : mm(size + metres));
   const entry = [limits.entrySizeLower, limits.entrySizeUpper]

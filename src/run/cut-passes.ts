@@ -1,4 +1,5 @@
 import {
+  METRES_PER_MICROMETRE,
   METRES_PER_MILLIMETRE,
   METRES_PER_SECOND_PER_MILLIMETRE_PER_MINUTE,
   SECONDS_PER_MINUTE,
@@ -123,7 +124,7 @@ async function cutPass(
   const { context, tools, replicate } = run;
   const pass = job.passes[index] as ResolvedPass;
   const slurry = run.estimator.slurryFace(pass);
-  const spec = cutSpecOf(job, { pass: index, replicate, before: earlier?.bricks ?? null, slurry });
+  const spec = cutSpecOf(job, { pass: index, replicate, earlier: earlier ?? null, slurry });
   const cut = makeCut(spec, tools.helpers.length > 0 ? allocateShared : undefined);
   await context.breathe();
   const roughness = await grow(cut, index, run);
@@ -161,9 +162,28 @@ function takenBy(measures: CutMeasures, before: CutMeasures | undefined) {
 
 const mm = (metres: number) => `${formatNumber(metres / METRES_PER_MILLIMETRE, 3)} mm`;
 
+const um = (metres: number) => `${formatNumber(metres / METRES_PER_MICROMETRE, 3)} um`;
+
+/** Share of the floor or wall under which cracks of an earlier pass are worth a word. */
+const TOLD_SHARE = 0.01;
+
+/** Cracks of earlier passes that a pass did not take away, and where. */
+function leftWarnings(job: ResolvedJob, index: number, { earlierDamage }: CutMeasures): ResultWarning[] {
+  if (!earlierDamage) return [];
+  const places = [['floor', earlierDamage.floor] as const, ['wall', earlierDamage.wall] as const];
+  return places.flatMap(([place, { share, deepest }]): ResultWarning[] => {
+    if (share < TOLD_SHARE) return [];
+    const percent = `${formatNumber(100 * share, 2)} %`;
+    const message = `Cracks of the passes before are left under ${percent} of the ${place}, ${um(deepest)} deep at most. Leave more stock.`;
+    return [{ path: settingPath(job, index - 1, 'stockUm'), message }];
+  });
+}
+
 /** What the cut of a pass has to say of it. */
-function warningsOf(job: ResolvedJob, index: number, { stalledAt, ranOut, depth }: CutMeasures): ResultWarning[] {
+function warningsOf(job: ResolvedJob, index: number, measures: CutMeasures): ResultWarning[] {
+  const { stalledAt, ranOut, depth } = measures;
   return [
+    ...leftWarnings(job, index, measures),
     ...(stalledAt === null
       ? []
       : [

@@ -18,6 +18,7 @@ import {
   plainFigure,
 } from '#src/planning/figures.ts';
 import type { CutMeasures } from '#src/planning/measure.ts';
+import type { DamageLeft } from '#src/voxel/left.ts';
 import type { FloorTexture } from './trace.ts';
 
 const um = (metres: number) => metres * MICROMETRES_PER_METRE;
@@ -71,6 +72,11 @@ function throughWords(through: boolean): Partial<Record<FigureName, string>> {
 
 const NOT_BALANCED = 'not known: the slurry\u2019s exchange does not break down at any load looked at';
 
+/** Depth of the damage that earlier passes have left under floor or wall (m). */
+function leftBy({ earlierDamage }: CutMeasures, of: (left: DamageLeft) => number): number {
+  return earlierDamage ? Math.max(of(earlierDamage.floor), of(earlierDamage.wall)) : 0;
+}
+
 /** The values of one pass as measured on its voxels. */
 export function cutValues(pass: ResolvedPass, measures: CutMeasures, texture: FloorTexture | null): FigureValues {
   const m = measures;
@@ -93,8 +99,19 @@ export function cutValues(pass: ResolvedPass, measures: CutMeasures, texture: Fl
     edgeChipP95Um: um(m.chipWidth.p95),
     edgeChipDepthUm: um(m.chipDepth.largest),
     exitChipMaxUm: m.exitChip ? um(m.exitChip.width) : null,
-    damageDepthUm: um(m.damageDepth),
-    damageDepthLargestUm: um(m.damageLargest),
+    // of this pass, or what it left of the passes before
+    damageDepthUm: um(
+      Math.max(
+        m.damageDepth,
+        leftBy(m, ({ p99 }) => p99),
+      ),
+    ),
+    damageDepthLargestUm: um(
+      Math.max(
+        m.damageLargest,
+        leftBy(m, ({ deepest }) => deepest),
+      ),
+    ),
     stockNeededUm: um(m.damageLargest),
     toolWearLengthMm: mm(m.toolWearLength),
     toolWearRatio: m.toolWearRatio,

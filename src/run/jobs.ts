@@ -9,6 +9,7 @@ import type { Problem } from '#src/formats/problems.ts';
 import { stockLibrary } from '#src/formats/stock-library.ts';
 import type { SlurryFace } from '#src/physics/estimate.ts';
 import type { BrickField } from '#src/voxel/bricks.ts';
+import type { Cut } from '#src/voxel/cut.ts';
 import type { CutSpec } from '#src/voxel/model.ts';
 import { predictOvercut } from './overcut.ts';
 import type { JobRequest, Refused, TakenDefault } from './protocol.ts';
@@ -58,7 +59,8 @@ export function cutSpecOf(
   at: {
     readonly pass: number;
     readonly replicate: number;
-    readonly before: BrickField | null;
+    /** The pass before, as it was cut. */
+    readonly earlier: { readonly bricks: BrickField; readonly cut: Cut } | null;
     readonly slurry: SlurryFace;
   },
 ): CutSpec {
@@ -77,7 +79,8 @@ export function cutSpecOf(
     replicate: at.replicate,
     slurry: at.slurry,
     face: pass.face,
-    before: at.before,
+    before: at.earlier?.bricks ?? null,
+    stripBefore: at.earlier?.cut.state.strip ?? null,
     toolLife: pass.toolLife,
     ...(pass.exit && { exit: pass.exit }),
     ...QUALITIES[quality ?? 'standard'],

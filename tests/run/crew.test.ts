@@ -23,7 +23,7 @@ if (opened.state === 'refused') throw new Error(JSON.stringify(opened.problems))
 const spec: CutSpec = cutSpecOf(opened.job, {
   pass: 0,
   replicate: 0,
-  before: null,
+  earlier: null,
   slurry: makeEstimator().slurryFace(opened.job.passes[0] as ResolvedPass),
 });
 
