@@ -188,10 +188,18 @@ export function resolveJob(file: JobFile, library: Library, options: ResolveOpti
     ranges: last.ranges,
     cut: cutOf(file),
     defaultsUsed: [...draft.defaultsUsed, ...cutDefaults(file)],
-    notes: draft.notes,
+    notes: [...draft.notes, ...coreNotes(passes)],
     warnings: problems,
     ...ofLastPass(last),
   };
+}
+
+/** What bores leave behind. */
+function coreNotes(passes: readonly ResolvedPass[]): string[] {
+  const most = Math.max(...passes.map(({ bores }) => bores.length));
+  if (most === 0 || passes.at(-1)?.exit) return [];
+  const each = most === 1 ? 'The bore leaves a core' : `Each of the ${most} bores leaves a core`;
+  return [`${each} standing on the floor, which has to be broken off or cut away.`];
 }
 
 function ofLastPass(pass: ResolvedPass) {
