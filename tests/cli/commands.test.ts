@@ -40,7 +40,7 @@ describe('estimate', () => {
     expect(code).toBe(0);
     expect(stdout).toMatch(/Machining time\s+[\d.]+\s+min/);
     expect(stdout).toMatch(/Entry size\s+[\d.]+\s+mm/);
-    expect(stdout).toMatch(/Floor Ra\s+[\d.]+\s+um\s+at most 0.01\s+misses/);
+    expect(stdout).toMatch(/Floor Ra\s+[\d.]+\s+um\s+[\d.]+ to [\d.]+\s+at most 0.01\s+misses/);
     expect(stdout).toContain('Misses: floor Ra');
   });
 

@@ -85,7 +85,7 @@ describe('the jobs that come with the program', () => {
   test('the two through-slots differ by their backing alone', () => {
     const backed = load('quartz-slot-backed.job.json').job;
     const open = load('quartz-slot-open.job.json').job;
-    expect(backed.passes[0]?.exit).toMatchObject({ backing: true, thickness: 1e-3 });
+    expect(backed.passes[0]?.exit).toMatchObject({ backing: true, thickness: 0.4 * 1e-3 });
     expect(open.passes[0]?.exit).toEqual({ ...backed.passes[0]?.exit, backing: false });
     expect(open.depth).toBe(open.stock.thickness);
   });
