@@ -23,6 +23,8 @@ export interface ProcessConstants {
   readonly plasticShare: number;
   /** Reach of the lips pushed up round a dent, from which its debris breaks off, over the radius of contact. */
   readonly lipRadius: number;
+  /** Flaw, in contact radii of a grain at its crushing load, from which the lips of a dent still crack off. */
+  readonly lipCracks: number;
   /** Volume of tool lost per volume of dent in the tool face. */
   readonly toolPlasticShare: number;
   /** Hardness of a soft metal tool face at work over its tabulated hardness. */
@@ -85,6 +87,7 @@ export const publishedConstants: ProcessConstants = {
   chipYield: 1,
   plasticShare: 1,
   lipRadius: 2.5,
+  lipCracks: 10,
   toolPlasticShare: 0.013,
   toolHardening: 1.6,
   toolHardeningLimit: 4e9,
@@ -147,6 +150,12 @@ export const constantNotes: Record<keyof ProcessConstants, ConstantNote> = {
     max: 3,
     source:
       'fitted: roughness of hard metal (check D12), the middle of the reach of pile-up round indents, from memory',
+  },
+  lipCracks: {
+    min: 3,
+    max: 30,
+    source:
+      'assumed: the plastic zone under a dent reaches three to nine contact radii; keeps most of a dent in cemented carbide and a few thousandths in ductile metal',
   },
   toolPlasticShare: { min: 0.005, max: 0.03, source: 'fitted: tool wear ratios (check D5)' },
   toolHardening: { min: 1.3, max: 2, source: 'assumed: work-hardened, grit-filled face' },

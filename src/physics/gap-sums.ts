@@ -12,7 +12,7 @@ import {
 } from './crater.ts';
 import { type SizeClasses, sizeClasses } from './grit-law.ts';
 import type { Conditions } from './records.ts';
-import { hitYield } from './yields.ts';
+import { debrisShare, hitYield } from './yields.ts';
 
 /**
  * What one grit per size class does, by gap, and its sum over a population of grits. Rows are worked out when first
@@ -56,6 +56,8 @@ export interface ContactRows {
   readonly rows: (Float64Array | undefined)[];
   readonly contact: ContactLaw;
   readonly yields: Float64Array;
+  /** `debrisShare` of the work. */
+  readonly debris: number;
   /** Mean of sqrt(1 - (P0/P)^(1/4)) at ln(P / P0m) = (i / 8 - 6) sigma. */
   readonly rootOnset: Float64Array;
   readonly crushLoads: Float64Array;
@@ -77,6 +79,7 @@ export function contactRows(conditions: Conditions, count = 256): ContactRows {
       meanRootOnset(conditions.constants.thresholdScatter, i / 8 - 6),
     ),
     yields: classes.diameter.map((d) => hitYield(conditions, d)),
+    debris: debrisShare(conditions),
     crushLoads: classes.diameter.map((d) => crushLoad(law, d)),
   };
 }
@@ -102,11 +105,12 @@ export function contactRow(rows: ContactRows, k: number): Float64Array {
 
 function fillTerms(row: Float64Array, i: number, hit: GritContact, rows: ContactRows): void {
   const { crater, conditions } = rows;
-  const { chipYield, plasticShare, lipRadius } = conditions.constants;
+  const { chipYield, lipRadius } = conditions.constants;
+  const { debris } = rows;
   const share = rows.yields[i] as number;
   const leaving = chipYield * share;
   const probability = leaving * chipProbability(crater, hit.load);
-  const dent = plasticShare * share * hit.workDent;
+  const dent = debris * share * hit.workDent;
   const at = i * TERMS;
   row[at + TERM.impulse] = hit.impulse;
   row[at + TERM.load] = hit.load;
@@ -117,7 +121,7 @@ function fillTerms(row: Float64Array, i: number, hit: GritContact, rows: Contact
   row[at + TERM.dent] = dent;
   // the lips of a dent lower lipRadius^2 times its contact area pi a^2 = P / H, as a paraboloid twice the mean depth
   const perArea = (2 * conditions.work.hardness) / (lipRadius * lipRadius);
-  const lowered = hit.load > 0 ? (perArea * plasticShare * hit.workDent) / hit.load : 0;
+  const lowered = hit.load > 0 ? (perArea * debris * hit.workDent) / hit.load : 0;
   row[at + TERM.dentDepth] = dent * lowered;
   row[at + TERM.toolDent] = hit.toolDent;
   row[at + TERM.crushRatio] = hit.uncappedLoad / (rows.crushLoads[i] as number);

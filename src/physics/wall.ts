@@ -3,7 +3,7 @@ import { contact, contactLaw, emptyContact } from './contact.ts';
 import { craterLaw, meanChipVolume } from './crater.ts';
 import { numberDensity } from './grit-law.ts';
 import type { Conditions } from './records.ts';
-import { hitYield } from './yields.ts';
+import { debrisShare, hitYield } from './yields.ts';
 
 /**
  * The side gap. A grit of diameter d in a side gap w is squeezed when w - rho < d < w + rho by d - (w - rho), rho the
@@ -105,7 +105,8 @@ function hitTables(
   shortest: number,
   longest: number,
 ): Pick<WallLaw, 'loads' | 'volumes' | 'toolDents'> {
-  const { chipYield, plasticShare } = conditions.constants;
+  const { chipYield } = conditions.constants;
+  const debris = debrisShare(conditions);
   const law = contactLaw(conditions);
   const crater = craterLaw(conditions.work, conditions.constants);
   const loads = new Float64Array(DIAMETERS * OVERLAPS);
@@ -118,7 +119,7 @@ function hitTables(
     for (let j = 0; j < OVERLAPS; j++) {
       contact(law, d, (largestOverlap * j) / (OVERLAPS - 1), hit);
       loads[i * OVERLAPS + j] = hit.load;
-      volumes[i * OVERLAPS + j] = share * (chipYield * meanChipVolume(crater, hit.load) + plasticShare * hit.workDent);
+      volumes[i * OVERLAPS + j] = share * (chipYield * meanChipVolume(crater, hit.load) + debris * hit.workDent);
       toolDents[i * OVERLAPS + j] = hit.toolDent;
     }
   }

@@ -1,6 +1,6 @@
-import { pow } from '#src/base/math.ts';
+import { PI, pow } from '#src/base/math.ts';
 import type { ProcessConstants } from './constants.ts';
-import type { Conditions } from './records.ts';
+import type { Conditions, WorkMaterial } from './records.ts';
 
 /**
  * Share of hits by grits of diameter d that can remove anything: a grit that the tool's return does not lift by about
@@ -27,4 +27,23 @@ export function blunting(workHardness: number, gritHardness: number, constants: 
 export function hitYield(conditions: Conditions, d: number): number {
   const { amplitude, constants, work, abrasive } = conditions;
   return liftOff(d, amplitude, constants) * blunting(work.hardness, abrasive.hardness, constants);
+}
+
+/** Flaw from which a crack starts under a dent: c* = 44.2 (K_Ic / H)^2. Lawn and Evans, J. Mater. Sci. 12 (1977) 2195, from memory. */
+export function crackStart({ toughness, hardness }: WorkMaterial): number {
+  const ratio = toughness / hardness;
+  return 44.2 * ratio * ratio;
+}
+
+/**
+ * Share of a dent's volume that leaves as debris. The lips of a dent break off where a crack can start in them; where it
+ * would need a flaw larger than what is strained, the dent only pushes material aside: 1 / (1 + c* / (lipCracks a)), a the
+ * contact radius of a median grain at its crushing load. Near one in glass and ceramics, most of a dent in cemented carbide, a few
+ * thousandths in ductile metal. Assumed form.
+ */
+export function debrisShare({ work, abrasive, grit, constants }: Conditions): number {
+  const d = grit.massMedian;
+  const strength = abrasive.crushStrength * pow(100e-6 / d, abrasive.crushSizeExponent);
+  const contact = Math.sqrt((constants.crushFactor * strength * d * d) / (PI * work.hardness));
+  return constants.plasticShare / (1 + crackStart(work) / (constants.lipCracks * contact));
 }

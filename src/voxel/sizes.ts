@@ -6,7 +6,7 @@ import { freeImpact } from '#src/physics/free-impact.ts';
 import { sizeClasses } from '#src/physics/grit-law.ts';
 import { gritsPerArea } from '#src/physics/population.ts';
 import type { Conditions } from '#src/physics/records.ts';
-import { hitYield } from '#src/physics/yields.ts';
+import { debrisShare, hitYield } from '#src/physics/yields.ts';
 import { COEFFICIENT, HIT_CHANNELS } from './kernels/contract.ts';
 import type { CutSpec } from './spec.ts';
 import type { CutTables, GapMeans } from './tables.ts';
@@ -78,7 +78,8 @@ export function typicalChip(conditions: Conditions, gap: number): TypicalChip {
   let dentRadius = 0;
   let chipVolume = 0;
   let dentVolume = 0;
-  const { lipRadius, chipYield, plasticShare } = conditions.constants;
+  const { lipRadius, chipYield } = conditions.constants;
+  const debris = debrisShare(conditions);
   diameter.forEach((d, k) => {
     if (d <= gap) return;
     contact(law, d, d - gap, out);
@@ -90,7 +91,7 @@ export function typicalChip(conditions: Conditions, gap: number): TypicalChip {
     dents += share;
     dentRadius += share * lipRadius * Math.sqrt(out.load / (Math.PI * conditions.work.hardness));
     chipVolume += share * chipYield * meanChipVolume(crater, out.load);
-    dentVolume += share * plasticShare * out.workDent;
+    dentVolume += share * debris * out.workDent;
   });
   // purely plastic work has no chips to resolve: its dents set the scale
   if (weight < 1e-3 * dents) return { radius: dents > 0 ? dentRadius / dents : gap / 10, depth: 0, dentShare: 1 };
@@ -129,7 +130,7 @@ export function freeLowering(conditions: Conditions, gap: number): number {
   diameter.forEach((d, k) => {
     if (d > gap) return;
     const free = freeImpact(conditions, d);
-    sum += (fraction[k] as number) * hitYield(conditions, d) * conditions.constants.plasticShare * free.dent;
+    sum += (fraction[k] as number) * hitYield(conditions, d) * free.dent;
   });
-  return gritsPerArea(conditions, gap) * sum;
+  return gritsPerArea(conditions, gap) * debrisShare(conditions) * sum;
 }

@@ -3,7 +3,7 @@ import { contact, contactLaw, emptyContact } from '#src/physics/contact.ts';
 import { craterLaw, thresholdQuantiles } from '#src/physics/crater.ts';
 import { numberQuantile, numberTail, sizeClasses } from '#src/physics/grit-law.ts';
 import type { Conditions } from '#src/physics/records.ts';
-import { hitYield } from '#src/physics/yields.ts';
+import { debrisShare, hitYield } from '#src/physics/yields.ts';
 import {
   COEFFICIENT,
   COEFFICIENTS,
@@ -96,14 +96,15 @@ export function grainProbability(k: number): number {
 }
 
 function hitTables(conditions: Conditions, crack: number): { hits: Float32Array; toolDents: Float64Array } {
-  const { grit, constants } = conditions;
+  const { grit } = conditions;
+  const debris = debrisShare(conditions);
   const law = contactLaw(conditions);
   const out = emptyContact();
   const hits = new Float32Array(HIT_DIAMETERS * HIT_OVERLAPS * HIT_CHANNELS);
   const toolDents = new Float64Array(HIT_DIAMETERS * HIT_OVERLAPS);
   for (let i = 1; i < HIT_DIAMETERS; i++) {
     const d = (i * grit.largest) / (HIT_DIAMETERS - 1);
-    const share = constants.plasticShare * hitYield(conditions, d);
+    const share = debris * hitYield(conditions, d);
     for (let j = 1; j < HIT_OVERLAPS; j++) {
       contact(law, d, (j * grit.largest) / (HIT_OVERLAPS - 1), out);
       const at = (i * HIT_OVERLAPS + j) * HIT_CHANNELS;

@@ -33,14 +33,14 @@ const MEMBER_ROWS = 96;
  */
 export function estimateTables(conditions: Conditions, population?: Float64Array, rows = ROWS): EstimateTables {
   const contacts = contactRows(conditions, rows);
-  const { chipYield, plasticShare } = conditions.constants;
+  const { chipYield } = conditions.constants;
   const thrownChips = new Float64Array(contacts.classes.diameter.length);
   const thrownDents = new Float64Array(contacts.classes.diameter.length);
   contacts.classes.diameter.forEach((d, i) => {
     const hit = freeImpact(conditions, d);
     const share = contacts.yields[i] as number;
     thrownChips[i] = chipYield * share * meanChipVolume(contacts.crater, hit.load);
-    thrownDents[i] = plasticShare * share * hit.dent;
+    thrownDents[i] = contacts.debris * share * hit.dent;
   });
   return { sums: gapSums(contacts, population), thrownChips, thrownDents };
 }

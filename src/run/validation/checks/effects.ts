@@ -89,7 +89,8 @@ const table: Check = {
       band: within(1, 2),
       why: 'factor 2',
       predict: (lab, amplitude) => 1 / wearOf(lab, amplitude, DUCTILE.toolSteel),
-      reason: 'outside the laws: see B1 on ductile work',
+      reason:
+        'what leaves a dent in ductile metal is bounded by where cracks can start (B2), not followed, and comes out too little',
     },
   ],
 };
