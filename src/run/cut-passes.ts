@@ -17,7 +17,7 @@ import { buildBricks } from '#src/voxel/solid.ts';
 import { SCALAR } from '#src/voxel/state.ts';
 import type { ValuedPass } from './combine.ts';
 import { allocateShared, startCrew } from './crew.ts';
-import { settingPath } from './estimate-job.ts';
+import { settingPath, shortWarnings } from './estimate-job.ts';
 import type { Estimator } from './estimates.ts';
 import { cutValues } from './figures.ts';
 import { cutSpecOf } from './jobs.ts';
@@ -184,6 +184,7 @@ function warningsOf(job: ResolvedJob, index: number, measures: CutMeasures): Res
   const { stalledAt, ranOut, depth } = measures;
   return [
     ...leftWarnings(job, index, measures),
+    ...(ranOut || stalledAt !== null ? [] : shortWarnings(job, index, depth)),
     ...(stalledAt === null
       ? []
       : [

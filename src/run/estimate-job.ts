@@ -91,6 +91,17 @@ export function settingPath(job: ResolvedJob, index: number, path: string): stri
   return job.file.passes && job.file.passes.length > 0 ? `passes[${index}].${path}` : path;
 }
 
+/** Share of the depth a cavity may end short of before it is said. */
+const TOLD_SHORT = 0.005;
+
+/** A pass whose tool wears shorter without the machine making up for it; nothing where it comes to its depth. */
+export function shortWarnings(job: ResolvedJob, index: number, depth: number): ResultWarning[] {
+  const pass = job.passes[index];
+  if (!pass || pass.toolLife.compensated || depth > (1 - TOLD_SHORT) * pass.depth) return [];
+  const message = `The tool wears shorter and nothing makes up for it: the cavity ends at ${mm(depth)} mm instead of ${mm(pass.depth)} mm. Let the machine make up for the wear, or ask for more depth.`;
+  return [{ path: settingPath(job, index, 'tool.wearCompensated'), message }];
+}
+
 /** What the estimate warns of, pass by pass. */
 export function estimateWarnings(job: ResolvedJob, { passes }: JobEstimate): ResultWarning[] {
   return passes.flatMap(({ pass, estimate: e }, index): ResultWarning[] => {
@@ -106,6 +117,7 @@ export function estimateWarnings(job: ResolvedJob, { passes }: JobEstimate): Res
         : [
             { path: load, message: 'The grits cannot bear this load: the figures are those of the largest they bear.' },
           ]),
+      ...(e.ranOut ? [] : shortWarnings(job, index, e.depthReached)),
       ...(e.ranOut
         ? [
             {

@@ -70,6 +70,11 @@ function throughWords(through: boolean): Partial<Record<FigureName, string>> {
   return Object.fromEntries(FLOOR_FIGURES.map((name) => [name, NO_FLOOR]));
 }
 
+/** Said of rates where the tool touches first with a small part of its face. */
+function rateNotes(pass: ResolvedPass): Partial<Record<FigureName, string>> {
+  return pass.face.kind === 'flat' ? {} : { rateMmPerMin: 'at first a small part of the face bears all of the load' };
+}
+
 const NOT_BALANCED = 'not known: the slurry\u2019s exchange does not break down at any load looked at';
 
 /** Depth of the damage that earlier passes have left under floor or wall (m). */
@@ -132,6 +137,7 @@ export function cutWords(pass: ResolvedPass, measures: CutMeasures, texture: Flo
   const departures = texture && texture.departures.length > 0 ? texture.departures.join('; ') : undefined;
   return {
     notes: {
+      ...rateNotes(pass),
       ...(pass.exit && measures.exitChip && { floorSizeMm: 'at the exit', overcutFloorUm: 'at the exit' }),
       floorFlatnessUm: `${Math.round(um(measures.flatnessMargin))} um inside the tool's outline are left out`,
       ...(departures !== undefined && { floorRaUm: departures, floorRzUm: departures }),
@@ -204,6 +210,7 @@ const NOT_ESTIMATED = 'not in the estimate: cut the job';
 export function estimateWords(pass: ResolvedPass): FigureWords {
   return {
     notes: {
+      ...rateNotes(pass),
       damageDepthLargestUm: '99.9 % of hits stay below',
       stockNeededUm: 'the damage that 99.9 % of hits stay below',
     },
